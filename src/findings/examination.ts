@@ -1,0 +1,92 @@
+import type { LinkStatus } from '../model/separability.ts';
+
+/** A stretch of frequencies with a mean level in it. */
+export interface BandLevel {
+  /** Hertz. */
+  readonly from: number;
+  readonly to: number;
+  /** Decibels. */
+  readonly level: number;
+}
+
+/** How one take agrees with the rest. Numbers are NaN where nothing can be said. */
+export interface TakeFinding {
+  /** Index into the takes. */
+  readonly take: number;
+  readonly readings: number;
+  readonly rmsResidual: number;
+  /** Constant by which the take stands off what all other takes say of it, in dB, and its standard uncertainty. */
+  readonly offset: number;
+  readonly offsetUncertainty: number;
+  /** The third-octave band with the largest mean residual; absent where there are no readings. */
+  readonly worst: BandLevel | undefined;
+  /** Mean redundancy of the take's readings: 0 means that nothing checks it. */
+  readonly redundancy: number;
+}
+
+/** The same over all takes of an emitter and a receiver. */
+export interface PairFinding {
+  readonly emitter: string;
+  readonly receiver: string;
+  readonly takes: readonly number[];
+  readonly rmsResidual: number;
+  readonly offset: number;
+  readonly redundancy: number;
+}
+
+/** One reported response in figures for a summary. */
+export interface UnitFinding {
+  /** Index into `Model.responses`. */
+  readonly response: number;
+  /** Median level over the frequencies at which it is known, in dB. */
+  readonly medianLevel: number;
+  /** Median standard and expanded uncertainty in dB; NaN where there is none. */
+  readonly medianUncertainty: number;
+  readonly medianExpanded: number;
+  /** Number of frequencies with each status. */
+  readonly counts: Readonly<Record<LinkStatus, number>>;
+  /** True where no reading of this response has redundancy: nothing checks it. */
+  readonly unchecked: boolean;
+}
+
+/** One extra take that would take away a freedom, as unit names. */
+export interface ExtraTake {
+  readonly emitter: string;
+  readonly receiver: string;
+}
+
+/** What cannot be told apart, with its cure. Freedoms with the same units and kind at several frequencies are one finding. */
+export interface OpenFinding {
+  readonly status: 'datum' | 'open';
+  /** Names of the responses that it moves, as in `Link.name`. */
+  readonly responses: readonly string[];
+  /** What is still known of them, e.g. `the sums N01 + N02, N01 + N04; the differences N01 − N03`. */
+  readonly known: string;
+  readonly convention: string;
+  /** Indices of the frequencies concerned. */
+  readonly frequencies: readonly number[];
+  /** The cheapest extra takes that would settle it together; empty where a take alone cannot (then `remedy` says what can). */
+  readonly extraTakes: readonly ExtraTake[];
+  /** One sentence. */
+  readonly remedy: string;
+}
+
+/** The whole set against its uncertainties. */
+export interface WholeFinding {
+  /** Root mean square of all residuals, in dB. */
+  readonly rmsResidual: number;
+  /** Residual standard deviation: √(Σ residual² / degrees of freedom), in dB; NaN without degrees of freedom. */
+  readonly residualDeviation: number;
+  readonly degreesOfFreedom: number;
+  /** Σ (residual/u)² per degree of freedom: 1 where the uncertainties explain the residuals; NaN where u comes from them or is absent. */
+  readonly chiSquarePerDof: number;
+}
+
+/** Everything the solution says of takes, pairs and units, as plain records; sentences are made of them in the report. */
+export interface Examination {
+  readonly takes: readonly TakeFinding[];
+  readonly pairs: readonly PairFinding[];
+  readonly units: readonly UnitFinding[];
+  readonly open: readonly OpenFinding[];
+  readonly whole: WholeFinding;
+}
