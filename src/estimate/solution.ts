@@ -30,10 +30,12 @@ export interface ReadingUncertainty {
 export interface CovarianceBlock {
   /** Indices into the frequencies. */
   readonly frequencies: readonly number[];
-  /** Variance scale a frequency of this block: covariance = scale · matrix, in dB². NaN where there is no uncertainty. */
+  /** Variance scale a frequency of this block: covariance = scale · matrix + common, in dB². NaN where there is no uncertainty. */
   readonly scales: Float64Array;
   /** Row-major, linksPerFrequency squared. Rows and columns of open links mean nothing. */
   readonly matrix: Float64Array;
+  /** The part that comes from gains shared by all frequencies, in dB²; absent where there are none. */
+  readonly common: Float64Array | undefined;
 }
 
 /** The estimate of a gain that is shared by all frequencies. */

@@ -1,0 +1,159 @@
+import type { Patterns } from '../model/find-patterns.ts';
+import type { Model } from '../model/model.ts';
+import type { TakeSet } from '../takes/take-set.ts';
+import type { CovarianceBlock, GainEstimate, ReadingUncertainty, Solution } from './solution.ts';
+import { LINK_STATUS } from './solution.ts';
+import type { Sweep } from './sweep.ts';
+
+/** A gain movement that shifts a link by less than this part is rounding. */
+const MOVES = 1e-7;
+
+const statusCode = (status: (typeof LINK_STATUS)[number]) => LINK_STATUS.indexOf(status);
+
+/** Turns the last pass into the solution: variances split by source, degrees of freedom, and what has no value taken out. */
+export function solutionOf(
+  set: TakeSet,
+  model: Model,
+  patterns: Patterns,
+  swept: Sweep,
+  reading: ReadingUncertainty,
+): Solution {
+  const width = set.frequencies.length;
+  const n = model.linksPerFrequency;
+  const estimates = Float64Array.from(swept.estimates);
+  const uncertainty = new Float64Array(width * n).fill(Number.NaN);
+  const dof = new Float64Array(width * n).fill(Number.NaN);
+  const status = new Uint8Array(width * n);
+  const gainDof = reading.bands.length === 0 ? Number.POSITIVE_INFINITY : sum(reading.bands.map((band) => band.dof));
+  const covariance: CovarianceBlock[] = [];
+  for (const { block, factored } of swept.blocks) {
+    const common = gainPart(factored.coupling, swept.gains.covariance, n, block.system.gains);
+    const fromPriors = priorPart(factored.covariance, block.system.priorLinks, block.system.priorWeights, n);
+    const linkStatus = linkStatuses(patterns, block.pattern, factored.coupling, swept, n);
+    const scales = Float64Array.from(block.frequencies, (f) =>
+      hasUncertainty(reading, set, f, patterns) ? swept.unitVariance[f]! : Number.NaN,
+    );
+    covariance.push({ frequencies: block.frequencies, scales, matrix: factored.covariance, common });
+    block.frequencies.forEach((f, k) => {
+      for (let link = 0; link < n; link++) {
+        const cell = f * n + link;
+        status[cell] = linkStatus[link]!;
+        if (linkStatus[link] === statusCode('open')) {
+          estimates[cell] = Number.NaN;
+          continue;
+        }
+        const scale = scales[k]!;
+        const total = scale * factored.covariance[link * n + link]!;
+        const gain = common === undefined ? 0 : common[link * n + link]!;
+        const ofPriors = scale * fromPriors[link]!;
+        uncertainty[cell] = Math.sqrt(Math.max(0, total + gain));
+        dof[cell] = effectiveDof(total + gain, Math.max(0, total - ofPriors), reading.dof[f]!, gain, gainDof);
+      }
+    });
+  }
+  const degreesOfFreedom = new Float64Array(width);
+  for (let cell = 0; cell < swept.redundancy.length; cell++) {
+    const redundancy = swept.redundancy[cell]!;
+    if (!Number.isNaN(redundancy)) degreesOfFreedom[cell % width] = degreesOfFreedom[cell % width]! + redundancy;
+  }
+  return {
+    patterns: patterns.patterns,
+    patternOf: patterns.patternOf,
+    estimates,
+    uncertainty,
+    dof,
+    status,
+    residuals: swept.residuals,
+    redundancy: swept.redundancy,
+    readingUncertainty: reading,
+    covariance,
+    gains: gainEstimates(model, swept, reading),
+    degreesOfFreedom,
+    worstCondition: Math.max(0, ...swept.blocks.map(({ factored }) => factored.condition)),
+    fallbacks: swept.blocks.filter(({ factored }) => factored.poor).length,
+  };
+}
+
+// A frequency at which nothing was measured has its certificate values, and their uncertainty, all the same.
+function hasUncertainty(
+  reading: ReadingUncertainty,
+  set: TakeSet,
+  f: number,
+  { patterns, patternOf }: Patterns,
+): boolean {
+  const take = patterns[patternOf[f]!]!.takes[0];
+  return take === undefined || !Number.isNaN(reading.values[take * set.frequencies.length + f]!);
+}
+
+/** n × n: coupling · gain covariance · couplingᵀ. */
+function gainPart(coupling: Float64Array, gains: Float64Array, n: number, count: number): Float64Array | undefined {
+  if (count === 0) return undefined;
+  const half = new Float64Array(n * count);
+  for (let i = 0; i < n; i++) {
+    for (let g = 0; g < count; g++) {
+      for (let h = 0; h < count; h++)
+        half[i * count + g] = half[i * count + g]! + coupling[i * count + h]! * gains[h * count + g]!;
+    }
+  }
+  const part = new Float64Array(n * n);
+  for (let i = 0; i < n; i++) {
+    for (let j = 0; j < n; j++) {
+      for (let g = 0; g < count; g++)
+        part[i * n + j] = part[i * n + j]! + half[i * count + g]! * coupling[j * count + g]!;
+    }
+  }
+  return part;
+}
+
+/** Diagonal of C P C: the variance that known values bring in, on the scale of the block. */
+function priorPart(covariance: Float64Array, links: readonly number[], weights: Float64Array, n: number): Float64Array {
+  const part = new Float64Array(n);
+  links.forEach((prior, k) => {
+    for (let i = 0; i < n; i++) part[i] = part[i]! + covariance[i * n + prior]! ** 2 * weights[k]!;
+  });
+  return part;
+}
+
+function linkStatuses(
+  patterns: Patterns,
+  pattern: number,
+  coupling: Float64Array,
+  swept: Sweep,
+  n: number,
+): Uint8Array {
+  const { status } = patterns.patterns[pattern]!.separability;
+  const codes = Uint8Array.from(status, statusCode);
+  const count = swept.gains.values.length;
+  for (const movement of swept.gains.movements) {
+    for (let link = 0; link < n; link++) {
+      let shift = 0;
+      for (let g = 0; g < count; g++) shift += coupling[link * count + g]! * movement[g]!;
+      if (Math.abs(shift) > MOVES && codes[link] === statusCode('ok')) codes[link] = statusCode('datum');
+    }
+  }
+  return codes;
+}
+
+/**
+ * Effective degrees of freedom of a variance of which `readings` and `gains` were estimated and the rest is known.
+ * Source: JCGM 100:2008, G.4.1 (Welch–Satterthwaite).
+ */
+function effectiveDof(total: number, readings: number, readingsDof: number, gains: number, gainsDof: number): number {
+  if (Number.isNaN(total)) return Number.NaN;
+  const spent = (readings > 0 ? readings ** 2 / readingsDof : 0) + (gains > 0 ? gains ** 2 / gainsDof : 0);
+  return spent > 0 ? total ** 2 / spent : Number.POSITIVE_INFINITY;
+}
+
+function gainEstimates(model: Model, swept: Sweep, reading: ReadingUncertainty): GainEstimate[] {
+  const { values, covariance, pinned } = swept.gains;
+  return Array.from(values, (value, g) => ({
+    link: model.linksPerFrequency + g,
+    value,
+    uncertainty: reading.source === 'none' ? Number.NaN : Math.sqrt(covariance[g * values.length + g]!),
+    status: pinned.includes(g) ? 'datum' : 'ok',
+  }));
+}
+
+function sum(values: readonly number[]): number {
+  return values.reduce((total, value) => total + value, 0);
+}

@@ -1,0 +1,68 @@
+import { findPatterns, type Patterns } from '../model/find-patterns.ts';
+import type { Model } from '../model/model.ts';
+import type { TakeSet } from '../takes/take-set.ts';
+import type { RankRevealingInverse } from './factor-block.ts';
+import { readingUncertainty } from './reading-uncertainty.ts';
+import { residualScatter } from './residual-scatter.ts';
+import type { ReadingUncertainty, Solution } from './solution.ts';
+import { solutionOf } from './solution-of.ts';
+import { type Sweep, sweep } from './sweep.ts';
+
+export interface SolveOptions {
+  /** Standard uncertainty of a reading in dB, used where the input has none of its own. */
+  readonly givenUncertainty?: number | undefined;
+  /** Called with the frequencies done and in all; several passes may be made. */
+  readonly onProgress?: (done: number, total: number) => void;
+}
+
+/** Passes in which the scatter of readings and the weights it gives settle; they move only where links have priors or gains are shared. */
+const MOST_PASSES = 12;
+/** Relative change of the scatter that counts as settled; well below what its own degrees of freedom leave open. */
+const SETTLED = 1e-9;
+
+/**
+ * Solves all frequencies by weighted least squares.
+ * Readings that come with no uncertainty are weighted equally at first; then the residuals tell their scatter, and the
+ * solution is made again with it until it no longer moves.
+ * Cost: proportional to the readings, plus links³ a block of frequencies with weights of its own.
+ */
+export async function solve(set: TakeSet, model: Model, options: SolveOptions = {}): Promise<Solution> {
+  const patterns = findPatterns(set, model);
+  const known = readingUncertainty(set, options.givenUncertainty);
+  const pass = passWith(set, model, patterns, options.onProgress);
+  if (known !== undefined) return solutionOf(set, model, patterns, await pass(known.values), known);
+
+  let swept = await pass(new Float64Array(set.levels.length).fill(Number.NaN));
+  let learnt = residualScatter(set, swept);
+  for (let i = 0; i < MOST_PASSES && learnt.source === 'residuals'; i++) {
+    swept = await pass(learnt.values);
+    const next = residualScatter(set, swept);
+    const settled = change(learnt, next) < SETTLED;
+    learnt = next;
+    if (settled) break;
+  }
+  return solutionOf(set, model, patterns, swept, learnt);
+}
+
+function passWith(
+  set: TakeSet,
+  model: Model,
+  patterns: Patterns,
+  onProgress: SolveOptions['onProgress'],
+): (uncertainty: Float64Array) => Promise<Sweep> {
+  let fallback: RankRevealingInverse | undefined;
+  return async (uncertainty) => {
+    const swept = sweep(set, model, patterns, uncertainty, fallback, onProgress);
+    if (!swept.needsFallback) return swept;
+    // Loaded only when it is needed: the library behind it takes longer to load than most sets to solve.
+    fallback = (await import('../numeric/rank-revealing.ts')).inverseNormalMatrix;
+    return sweep(set, model, patterns, uncertainty, fallback, onProgress);
+  };
+}
+
+function change(before: ReadingUncertainty, after: ReadingUncertainty): number {
+  const changes = before.bands.map((band, b) =>
+    Math.abs((after.bands[b]?.standardDeviation ?? 0) / band.standardDeviation - 1),
+  );
+  return Math.max(0, ...changes.filter((value) => !Number.isNaN(value)));
+}
