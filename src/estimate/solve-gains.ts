@@ -12,27 +12,23 @@ export interface SolvedGains {
   readonly movements: readonly Float64Array[];
 }
 
-/** A pivot below this part of its diagonal is rounding: the gain cannot be told from the gains kept. */
+/** A pivot below this part of the gain's own weight is rounding: the gain cannot be told from the links and the gains kept. */
 const RANK_TOLERANCE = 1e-9;
 
 /**
  * Solves S g = b. Gains are kept from the last to the first, so that where one of several must be called 0 dB it is that
  * of the first-named session.
+ * @param ownWeights sum of the weights of each gain's readings, before the links were eliminated: what rounding is
+ * measured by.
  */
-export function solveGains(schur: Float64Array, rightHandSide: Float64Array): SolvedGains {
+export function solveGains(schur: Float64Array, rightHandSide: Float64Array, ownWeights: Float64Array): SolvedGains {
   const count = rightHandSide.length;
-  const diagonalTop = Math.max(...Array.from({ length: count }, (_, g) => schur[g * count + g]!), 0);
   const kept: number[] = [];
   let inverse = new Float64Array(0);
   for (let gain = count - 1; gain >= 0; gain--) {
     const candidate = [...kept, gain];
     const pivot = remainingPivot(schur, count, kept, inverse, gain);
-    if (
-      !(pivot > RANK_TOLERANCE * Math.max(schur[gain * count + gain]!, RANK_TOLERANCE * diagonalTop)) ||
-      !(pivot > 0)
-    ) {
-      continue;
-    }
+    if (!(pivot > RANK_TOLERANCE * ownWeights[gain]!)) continue;
     kept.push(gain);
     inverse = inverseOf(schur, count, candidate);
   }

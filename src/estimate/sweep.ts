@@ -40,6 +40,7 @@ export function sweep(
   const estimates = new Float64Array(width * n);
   const schur = new Float64Array(gainCount * gainCount);
   const gainSide = new Float64Array(gainCount);
+  const gainWeights = new Float64Array(gainCount);
   let done = 0;
   const blocks = grouped.blocks.map((block) => {
     const factored = factorBlock(block.system, fallback);
@@ -50,6 +51,9 @@ export function sweep(
       estimates.set(side, f * n);
       if (border === undefined) continue;
       const precision = 1 / grouped.unitVariance[f]!;
+      block.system.incidence.gain.forEach((gain, r) => {
+        if (gain >= 0) gainWeights[gain] = gainWeights[gain]! + block.system.weights[r]! * precision;
+      });
       for (let k = 0; k < schur.length; k++) schur[k] = schur[k]! + factored.schur[k]! * precision;
       for (let g = 0; g < gainCount; g++) {
         // Bᵀ M⁻¹ b, with M⁻¹ B at hand as the coupling.
@@ -62,7 +66,7 @@ export function sweep(
     onProgress?.(done, width);
     return { block, factored };
   });
-  const gains = solveGains(schur, gainSide);
+  const gains = solveGains(schur, gainSide, gainWeights);
   if (gainCount > 0) substituteGains(estimates, blocks, gains, n);
   const residuals = new Float64Array(set.levels.length).fill(Number.NaN);
   const redundancy = new Float64Array(set.levels.length).fill(Number.NaN);

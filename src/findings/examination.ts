@@ -49,26 +49,48 @@ export interface UnitFinding {
   readonly unchecked: boolean;
 }
 
-/** One extra take that would take away a freedom, as unit names. */
+/** One extra take that would take away a freedom, as unit names (with `@mount` where mounts are told apart). */
 export interface ExtraTake {
   readonly emitter: string;
   readonly receiver: string;
+  /** The path it must go over; empty where any will do. */
+  readonly path: string;
 }
 
-/** What cannot be told apart, with its cure. Freedoms with the same units and kind at several frequencies are one finding. */
+/** Stands in an extra take for a unit that is not in the set. */
+export const THIRD_UNIT = 'a third unit';
+
+/** Why something cannot be told apart. */
+export type OpenKind =
+  /** Reciprocal model: the part has no odd loop and nothing known. Sums across its two sides and differences within one are known. */
+  | 'no odd loop'
+  /** Nothing was measured of the response at these frequencies. */
+  | 'not measured'
+  /** Directional model: one constant of the part is fixed by convention. Sums emit + receive are known. */
+  | 'one constant'
+  /** The level of a path cannot be told from the units. */
+  | 'path'
+  /** A session's gain is 0 dB by convention, since the takes leave it open. */
+  | 'gain';
+
+/** What cannot be told apart, with its cure. The same freedom at several frequencies is one finding. */
 export interface OpenFinding {
+  readonly kind: OpenKind;
+  /** `datum`: a convention stands for it; `open`: nothing does, and the responses have no level. */
   readonly status: 'datum' | 'open';
-  /** Names of the responses that it moves, as in `Link.name`. */
+  /** Names of the links that it moves, as in `Link.name`. */
   readonly responses: readonly string[];
-  /** What is still known of them, e.g. `the sums N01 + N02, N01 + N04; the differences N01 − N03`. */
-  readonly known: string;
+  /** Those that move up and those that move down together; absent for a path or a gain. */
+  readonly sides: readonly [readonly string[], readonly string[]] | undefined;
+  /** What the convention says; empty where there is none. */
   readonly convention: string;
-  /** Indices of the frequencies concerned. */
+  /** Indices of the frequencies concerned, ascending. */
   readonly frequencies: readonly number[];
-  /** The cheapest extra takes that would settle it together; empty where a take alone cannot (then `remedy` says what can). */
+  /**
+   * The cheapest extra takes that would settle it together. Empty where no take can: one constant of a directional part
+   * needs a reference or a reversible unit, a single session's gain a second session over the same pairs.
+   */
   readonly extraTakes: readonly ExtraTake[];
-  /** One sentence. */
-  readonly remedy: string;
 }
 
 /** The whole set against its uncertainties. */

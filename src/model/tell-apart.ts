@@ -57,7 +57,9 @@ function freedomOf(part: Part, model: Model): FreeDirection {
   const movement = new Float64Array(model.linksPerFrequency);
   for (const link of one) movement[link] = 1;
   for (const link of other) movement[link] = -1;
-  const convention = other.length === 0 ? undefined : datumOf(part, model, movement);
+  // Of one emitter and one receiver only their sum is known: a convention would make numbers out of nothing.
+  const tellsNothing = other.length === 0 || (part.links.length === 2 && model.datum !== 'balanced');
+  const convention = tellsNothing ? undefined : datumOf(part, model, movement);
   if (convention !== undefined) return { movement, ...convention, status: 'datum' };
   const length = Math.sqrt(part.links.length);
   return { movement, restraint: movement.map((entry) => entry / length), status: 'open', convention: '' };

@@ -62,6 +62,19 @@ export function coverageFactor(coverage: number, dof: number): number {
   return studentUpperQuantile((1 - coverage) / 2, dof);
 }
 
+/** Coverage factors of one coverage, remembered by degrees of freedom: a table of responses asks for the same few many times. */
+export function coverageFactors(coverage: number): (dof: number) => number {
+  const remembered = new Map<number, number>();
+  return (dof) => {
+    let factor = remembered.get(dof);
+    if (factor === undefined) {
+      factor = coverageFactor(coverage, dof);
+      remembered.set(dof, factor);
+    }
+    return factor;
+  };
+}
+
 function twoTails(t: number, dof: number): number {
   const root = t / Math.sqrt(dof);
   if (root > FAR) return Math.exp(logFarFactor(dof) - dof * Math.log(root));

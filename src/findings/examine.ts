@@ -1,0 +1,207 @@
+import { LINK_STATUS, type Solution } from '../estimate/solution.ts';
+import { thirdOctaves } from '../estimate/third-octaves.ts';
+import type { Model } from '../model/model.ts';
+import { coverageFactors } from '../numeric/student-t.ts';
+import type { TakeSet } from '../takes/take-set.ts';
+import type {
+  BandLevel,
+  Examination,
+  OpenFinding,
+  PairFinding,
+  TakeFinding,
+  UnitFinding,
+  WholeFinding,
+} from './examination.ts';
+import { openFindings } from './open-findings.ts';
+
+export interface ExamineOptions {
+  /** Coverage probability of expanded uncertainties, such as 0.95. */
+  readonly coverage: number;
+}
+
+/** Judges a solution: takes, pairs, units, the whole, and what is open. Cost: linear in the readings. */
+export function examine(set: TakeSet, model: Model, solution: Solution, options: ExamineOptions): Examination {
+  const takes = set.takes.map((_, take) => takeFinding(set, solution, take));
+  const factorOf = coverageFactors(options.coverage);
+  return {
+    takes,
+    pairs: pairFindings(set, takes),
+    units: model.responses.map((_, response) => unitFinding(set, model, solution, response, factorOf)),
+    open: [...openFindings(set, model, solution), ...gainFindings(model, solution)],
+    whole: wholeFinding(solution),
+  };
+}
+
+/**
+ * The offset is what a constant added to this take alone would have to be, had the take been measured with it: the shift
+ * δ of one take moves its weighted residuals by r δ, so δ = Σ (v/u²) / Σ (r/u²), with u² (δ) = 1 / Σ (r/u²), all
+ * frequencies taken as independent. Source: Baarda 1968, A testing procedure for use in geodetic networks (one-dimensional
+ * alternative), formula from memory.
+ */
+function takeFinding(set: TakeSet, solution: Solution, take: number): TakeFinding {
+  const width = set.frequencies.length;
+  let readings = 0;
+  let squares = 0;
+  let redundancy = 0;
+  let shifted = 0;
+  let precision = 0;
+  for (let f = 0; f < width; f++) {
+    const residual = solution.residuals[take * width + f]!;
+    if (Number.isNaN(residual)) continue;
+    const r = solution.redundancy[take * width + f]!;
+    const u = solution.readingUncertainty.values[take * width + f]!;
+    readings++;
+    squares += residual * residual;
+    redundancy += r;
+    // Without an uncertainty all readings weigh the same, and the offset has none of its own.
+    const weight = Number.isNaN(u) ? 1 : 1 / (u * u);
+    shifted += residual * weight;
+    precision += r * weight;
+  }
+  const checked = precision > 0;
+  const known = solution.readingUncertainty.source !== 'none';
+  return {
+    take,
+    readings,
+    rmsResidual: readings > 0 ? Math.sqrt(squares / readings) : Number.NaN,
+    offset: checked ? shifted / precision : Number.NaN,
+    offsetUncertainty: checked && known ? 1 / Math.sqrt(precision) : Number.NaN,
+    worst: worstBand(set, solution, take),
+    redundancy: readings > 0 ? redundancy / readings : Number.NaN,
+  };
+}
+
+function worstBand(set: TakeSet, solution: Solution, take: number): BandLevel | undefined {
+  const { bands, bandOf } = thirdOctaves(set.frequencies);
+  const width = set.frequencies.length;
+  const sums = new Float64Array(bands.length);
+  const counts = new Float64Array(bands.length);
+  for (let f = 0; f < width; f++) {
+    const residual = solution.residuals[take * width + f]!;
+    if (Number.isNaN(residual)) continue;
+    const band = bandOf[f]!;
+    sums[band] = sums[band]! + residual;
+    counts[band] = counts[band]! + 1;
+  }
+  let worst: BandLevel | undefined;
+  bands.forEach(({ from, to }, band) => {
+    const level = sums[band]! / counts[band]!;
+    if (counts[band]! > 0 && (worst === undefined || Math.abs(level) > Math.abs(worst.level)))
+      worst = { from, to, level };
+  });
+  return worst;
+}
+
+function pairFindings(set: TakeSet, takes: readonly TakeFinding[]): PairFinding[] {
+  const groups = new Map<string, number[]>();
+  set.takes.forEach(({ emitter, receiver }, t) => {
+    const key = JSON.stringify([emitter, receiver]);
+    groups.set(key, [...(groups.get(key) ?? []), t]);
+  });
+  return [...groups.values()].map((members): PairFinding => {
+    const used = members.map((t) => takes[t]!).filter((take) => take.readings > 0);
+    const readings = used.reduce((sum, take) => sum + take.readings, 0);
+    const mean = (of: (take: TakeFinding) => number) =>
+      used.reduce((sum, take) => sum + take.readings * of(take), 0) / readings;
+    const { emitter, receiver } = set.takes[members[0]!]!;
+    return {
+      emitter,
+      receiver,
+      takes: members,
+      rmsResidual: Math.sqrt(mean((take) => take.rmsResidual ** 2)),
+      offset: mean((take) => take.offset),
+      redundancy: mean((take) => take.redundancy),
+    };
+  });
+}
+
+function unitFinding(
+  set: TakeSet,
+  model: Model,
+  solution: Solution,
+  response: number,
+  factorOf: (dof: number) => number,
+): UnitFinding {
+  const { link, offset } = model.responses[response]!;
+  const n = model.linksPerFrequency;
+  const counts = { ok: 0, datum: 0, open: 0 };
+  const levels: number[] = [];
+  const uncertainties: number[] = [];
+  const expanded: number[] = [];
+  for (let f = 0; f < set.frequencies.length; f++) {
+    const cell = f * n + link;
+    const status = LINK_STATUS[solution.status[cell]!]!;
+    counts[status]++;
+    if (status === 'open') continue;
+    levels.push(solution.estimates[cell]! + (offset?.[f] ?? 0));
+    const u = solution.uncertainty[cell]!;
+    if (Number.isNaN(u)) continue;
+    uncertainties.push(u);
+    expanded.push(u * factorOf(solution.dof[cell]!));
+  }
+  return {
+    response,
+    medianLevel: median(levels),
+    medianUncertainty: median(uncertainties),
+    medianExpanded: median(expanded),
+    counts,
+    unchecked: isUnchecked(set, model, solution, link),
+  };
+}
+
+/** A unit none of whose readings has redundancy, although it has readings. */
+function isUnchecked(set: TakeSet, model: Model, solution: Solution, link: number): boolean {
+  const width = set.frequencies.length;
+  let readings = 0;
+  for (let t = 0; t < set.takes.length; t++) {
+    if (!model.chains[t]!.links.includes(link)) continue;
+    for (let f = 0; f < width; f++) {
+      const redundancy = solution.redundancy[t * width + f]!;
+      if (redundancy > 0) return false;
+      if (!Number.isNaN(redundancy)) readings++;
+    }
+  }
+  return readings > 0;
+}
+
+function gainFindings(model: Model, solution: Solution): OpenFinding[] {
+  const pinned = solution.gains.filter((gain) => gain.status === 'datum');
+  return pinned.map((gain) => ({
+    kind: 'gain',
+    status: 'datum',
+    responses: [model.links[gain.link]!.name],
+    sides: undefined,
+    convention: `${model.links[gain.link]!.name} = 0 dB`,
+    frequencies: [...solution.patternOf.keys()],
+    extraTakes: [],
+  }));
+}
+
+function wholeFinding(solution: Solution): WholeFinding {
+  const { residuals, readingUncertainty } = solution;
+  let count = 0;
+  let squares = 0;
+  let weighted = 0;
+  for (let cell = 0; cell < residuals.length; cell++) {
+    const residual = residuals[cell]!;
+    if (Number.isNaN(residual)) continue;
+    count++;
+    squares += residual * residual;
+    weighted += (residual / readingUncertainty.values[cell]!) ** 2;
+  }
+  const degreesOfFreedom = solution.degreesOfFreedom.reduce((sum, dof) => sum + dof, 0);
+  const isOwn = readingUncertainty.source === 'residuals' || readingUncertainty.source === 'none';
+  return {
+    rmsResidual: Math.sqrt(squares / count),
+    residualDeviation: degreesOfFreedom > 0 ? Math.sqrt(squares / degreesOfFreedom) : Number.NaN,
+    degreesOfFreedom,
+    chiSquarePerDof: degreesOfFreedom > 0 && !isOwn ? weighted / degreesOfFreedom : Number.NaN,
+  };
+}
+
+function median(values: number[]): number {
+  if (values.length === 0) return Number.NaN;
+  const sorted = Float64Array.from(values).sort();
+  const middle = sorted.length >> 1;
+  return sorted.length % 2 === 1 ? sorted[middle]! : (sorted[middle - 1]! + sorted[middle]!) / 2;
+}
