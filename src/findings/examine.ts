@@ -1,5 +1,5 @@
 import { LINK_STATUS, type Solution } from '../estimate/solution.ts';
-import { thirdOctaves } from '../estimate/third-octaves.ts';
+import { type ThirdOctaves, thirdOctaves } from '../estimate/third-octaves.ts';
 import type { Model } from '../model/model.ts';
 import { coverageFactors } from '../numeric/student-t.ts';
 import type { TakeSet } from '../takes/take-set.ts';
@@ -21,7 +21,8 @@ export interface ExamineOptions {
 
 /** Judges a solution: takes, pairs, units, the whole, and what is open. Cost: linear in the readings. */
 export function examine(set: TakeSet, model: Model, solution: Solution, options: ExamineOptions): Examination {
-  const takes = set.takes.map((_, take) => takeFinding(set, solution, take));
+  const bands = thirdOctaves(set.frequencies);
+  const takes = set.takes.map((_, take) => takeFinding(set, solution, take, bands));
   const factorOf = coverageFactors(options.coverage);
   return {
     takes,
@@ -38,7 +39,7 @@ export function examine(set: TakeSet, model: Model, solution: Solution, options:
  * frequencies taken as independent. Source: Baarda 1968, A testing procedure for use in geodetic networks (one-dimensional
  * alternative), formula from memory.
  */
-function takeFinding(set: TakeSet, solution: Solution, take: number): TakeFinding {
+function takeFinding(set: TakeSet, solution: Solution, take: number, bands: ThirdOctaves): TakeFinding {
   const width = set.frequencies.length;
   let readings = 0;
   let squares = 0;
@@ -66,13 +67,17 @@ function takeFinding(set: TakeSet, solution: Solution, take: number): TakeFindin
     rmsResidual: readings > 0 ? Math.sqrt(squares / readings) : Number.NaN,
     offset: checked ? shifted / precision : Number.NaN,
     offsetUncertainty: checked && known ? 1 / Math.sqrt(precision) : Number.NaN,
-    worst: worstBand(set, solution, take),
+    worst: worstBand(set, solution, take, bands),
     redundancy: readings > 0 ? redundancy / readings : Number.NaN,
   };
 }
 
-function worstBand(set: TakeSet, solution: Solution, take: number): BandLevel | undefined {
-  const { bands, bandOf } = thirdOctaves(set.frequencies);
+function worstBand(
+  set: TakeSet,
+  solution: Solution,
+  take: number,
+  { bands, bandOf }: ThirdOctaves,
+): BandLevel | undefined {
   const width = set.frequencies.length;
   const sums = new Float64Array(bands.length);
   const counts = new Float64Array(bands.length);
@@ -182,12 +187,17 @@ function wholeFinding(solution: Solution): WholeFinding {
   let count = 0;
   let squares = 0;
   let weighted = 0;
+  let weightedDof = 0;
   for (let cell = 0; cell < residuals.length; cell++) {
     const residual = residuals[cell]!;
     if (Number.isNaN(residual)) continue;
     count++;
     squares += residual * residual;
-    weighted += (residual / readingUncertainty.values[cell]!) ** 2;
+    // Bands without repeats have no uncertainty to hold against.
+    const u = readingUncertainty.values[cell]!;
+    if (Number.isNaN(u)) continue;
+    weighted += (residual / u) ** 2;
+    weightedDof += solution.redundancy[cell]!;
   }
   const degreesOfFreedom = solution.degreesOfFreedom.reduce((sum, dof) => sum + dof, 0);
   const isOwn = readingUncertainty.source === 'residuals' || readingUncertainty.source === 'none';
@@ -195,7 +205,7 @@ function wholeFinding(solution: Solution): WholeFinding {
     rmsResidual: Math.sqrt(squares / count),
     residualDeviation: degreesOfFreedom > 0 ? Math.sqrt(squares / degreesOfFreedom) : Number.NaN,
     degreesOfFreedom,
-    chiSquarePerDof: degreesOfFreedom > 0 && !isOwn ? weighted / degreesOfFreedom : Number.NaN,
+    chiSquarePerDof: weightedDof > 0 && !isOwn ? weighted / weightedDof : Number.NaN,
   };
 }
 

@@ -1,0 +1,22 @@
+import { covarianceFile } from './covariance-json.ts';
+import { jsonText } from './json-text.ts';
+import { pairsTable } from './pairs-table.ts';
+import { residualsTable } from './residuals-table.ts';
+import { responsesTable } from './responses-table.ts';
+import type { OutputFile, Result } from './result.ts';
+import { summaryRecord } from './summary-json.ts';
+import { takesTable } from './takes-table.ts';
+import { unusedTable } from './unused-table.ts';
+
+/** Every file that `solve` writes. Their text is made while it is written: nothing is computed before. */
+export function outputFiles(result: Result): OutputFile[] {
+  return [
+    responsesTable(result),
+    takesTable(result),
+    pairsTable(result),
+    residualsTable(result),
+    unusedTable(result),
+    { name: 'summary.json', chunks: () => [jsonText(summaryRecord(result))] },
+    covarianceFile(result),
+  ];
+}

@@ -1,0 +1,61 @@
+import { LINK_STATUS } from '../estimate/solution.ts';
+import type { Response } from '../model/model.ts';
+import type { LinkStatus } from '../model/separability.ts';
+import { coverageFactors } from '../numeric/student-t.ts';
+import { type Column, csvFile } from './csv-file.ts';
+import { figureCell, frequencyCell, levelCell } from './number-text.ts';
+import type { OutputFile, Result } from './result.ts';
+
+/** A response at one frequency. Numbers are NaN where they are not available. */
+interface ResponseRow {
+  readonly response: Response;
+  /** Hertz. */
+  readonly frequency: number;
+  readonly status: LinkStatus;
+  /** Decibels. */
+  readonly level: number;
+  readonly uncertainty: number;
+  readonly factor: number;
+  readonly dof: number;
+}
+
+const COLUMNS: readonly Column<ResponseRow>[] = [
+  { name: 'unit', text: (row) => row.response.unit },
+  { name: 'mount', text: (row) => row.response.mount },
+  { name: 'role', text: (row) => row.response.role },
+  { name: 'frequency_hz', text: (row) => frequencyCell(row.frequency) },
+  { name: 'level_db', text: (row) => levelCell(row.level) },
+  { name: 'u_db', text: (row) => figureCell(row.uncertainty) },
+  { name: 'k', text: (row) => figureCell(row.factor) },
+  { name: 'expanded_db', text: (row) => figureCell(row.factor * row.uncertainty) },
+  { name: 'dof', text: (row) => figureCell(row.dof) },
+  { name: 'status', text: (row) => row.status },
+];
+
+/** `responses.csv`: every response at every frequency; an open one has neither level nor uncertainty. */
+export function responsesTable(result: Result): OutputFile {
+  return csvFile('responses.csv', COLUMNS, () => responseRows(result));
+}
+
+function* responseRows({ set, model, solution, coverage }: Result): Iterable<ResponseRow> {
+  const factorOf = coverageFactors(coverage);
+  for (const response of model.responses) {
+    for (let f = 0; f < set.frequencies.length; f++) {
+      const cell = f * model.linksPerFrequency + response.link;
+      const status = LINK_STATUS[solution.status[cell]!]!;
+      const isOpen = status === 'open';
+      const uncertainty = isOpen ? Number.NaN : solution.uncertainty[cell]!;
+      const known = !Number.isNaN(uncertainty);
+      const dof = known ? solution.dof[cell]! : Number.NaN;
+      yield {
+        response,
+        frequency: set.frequencies[f]!,
+        status,
+        level: isOpen ? Number.NaN : solution.estimates[cell]! + (response.offset?.[f] ?? 0),
+        uncertainty,
+        factor: known ? factorOf(dof) : Number.NaN,
+        dof,
+      };
+    }
+  }
+}
