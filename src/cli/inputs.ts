@@ -1,0 +1,99 @@
+import { DEFAULT_MODEL_OPTIONS, type ModelOptions } from '../model/model-options.ts';
+import { parseRange } from '../quantity/frequency.ts';
+import { InputError } from '../quantity/input-fault.ts';
+import { readFiles } from '../readings/read-files.ts';
+import { readPathLevels } from '../readings/read-path-levels.ts';
+import { readReferences } from '../readings/read-references.ts';
+import type { Readings } from '../readings/readings.ts';
+import type { Source } from '../readings/source.ts';
+import type { InputSummary } from '../report/result.ts';
+import type { GatherOptions } from '../takes/gather-takes.ts';
+import type { TakeSet } from '../takes/take-set.ts';
+import { fileSource } from './file-source.ts';
+import { parseGrid } from './grid-text.ts';
+import type { Request } from './options.ts';
+import type { Progress } from './progress.ts';
+import { DEFAULT_SETTINGS, type Settings } from './settings.ts';
+import { type EarlierRun, readSettingsFile } from './settings-file.ts';
+
+/** Everything that shapes the run: defaults, then the settings file, then the command line. */
+export async function settingsOf(
+  request: Request,
+): Promise<{ readonly settings: Settings; readonly earlier: EarlierRun | undefined }> {
+  const earlier = request.settingsFile === undefined ? undefined : await readSettingsFile(request.settingsFile);
+  const settings: Settings = { ...DEFAULT_SETTINGS, ...earlier?.settings, ...request.given };
+  if (settings.files.length > 0) return { settings, earlier };
+  throw new InputError([
+    {
+      place: { file: request.settingsFile ?? 'settings', column: 'files' },
+      found: 'no input file',
+      expected: 'at least one, here or on the command line',
+      remedy: 'Name the files on the command line.',
+    },
+  ]);
+}
+
+/** Names of all files that the settings say are to be read. */
+export function namedFiles(settings: Settings): string[] {
+  const { files, refs, path } = settings;
+  return [...files, ...(refs === null ? [] : [refs]), ...(pathWord(path) === undefined ? [path] : [])];
+}
+
+/** Reads the measurement files. */
+export async function readMeasurements(settings: Settings, progress: Progress): Promise<Readings> {
+  const onProgress = progress.step('reading');
+  const sources = await openAll(settings.files);
+  return readFiles(sources, settings.level === null ? { onProgress } : { onProgress, levelFormula: settings.level });
+}
+
+// All files that cannot be opened are told at once.
+async function openAll(files: readonly string[]): Promise<Source[]> {
+  const opened = await Promise.allSettled(files.map((file) => fileSource(file)));
+  const failures = opened.filter((outcome) => outcome.status === 'rejected').map(({ reason }): unknown => reason);
+  const defect = failures.find((reason) => !(reason instanceof InputError));
+  if (defect !== undefined) throw defect;
+  if (failures.length > 0) throw new InputError(failures.flatMap((reason) => (reason as InputError).faults));
+  return opened.flatMap((outcome) => (outcome.status === 'fulfilled' ? [outcome.value] : []));
+}
+
+export function gatherOptions(settings: Settings): GatherOptions {
+  const grid = parseGrid(settings.grid);
+  if (grid === undefined) throw new Error(`the grid ${settings.grid} was accepted but cannot be read`);
+  return { grid, band: settings.band === null ? undefined : parseRange(settings.band) };
+}
+
+/** What the user decides about the model, with certificates and path levels read from their files. */
+export async function modelOptions(settings: Settings): Promise<ModelOptions> {
+  const { model, datum, reversible, lookalikes, refs, path } = settings;
+  return {
+    ...DEFAULT_MODEL_OPTIONS,
+    model,
+    datum,
+    reversible,
+    lookalikes,
+    looseGain: settings['loose-gain'],
+    references: refs === null ? [] : await readReferences(await fileSource(refs)),
+    path: pathWord(path) ?? (await readPathLevels(await fileSource(path))),
+  };
+}
+
+function pathWord(path: string): 'free' | 'none' | undefined {
+  return path === 'free' || path === 'none' ? path : undefined;
+}
+
+/** What reading and gathering gave, for the outputs. */
+export function inputSummary(readings: Readings, set: TakeSet): InputSummary {
+  return {
+    files: readings.files,
+    readings: readings.count,
+    unused: [...readings.unused, ...set.unused],
+    notices: [...readings.notices, ...set.notices],
+  };
+}
+
+/** One sentence for each input file that is no longer what it was in the run that is repeated. */
+export function changedFiles(readings: Readings, earlier: EarlierRun | undefined): string[] {
+  return readings.files
+    .filter(({ name, sha256 }) => (earlier?.sha256.get(name) ?? sha256) !== sha256)
+    .map(({ name }) => `${name} is not what it was in the run that is repeated: its SHA-256 differs.`);
+}

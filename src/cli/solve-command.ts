@@ -1,0 +1,78 @@
+import { solve } from '../estimate/solve.ts';
+import { examine } from '../findings/examine.ts';
+import { buildModel } from '../model/build-model.ts';
+import { jsonText } from '../report/json-text.ts';
+import { outputFiles } from '../report/output-files.ts';
+import type { Result } from '../report/result.ts';
+import { summaryRecord } from '../report/summary-json.ts';
+import { terminalSummary } from '../report/terminal-summary.ts';
+import { gatherTakes } from '../takes/gather-takes.ts';
+import { EXIT } from './exit-codes.ts';
+import {
+  changedFiles,
+  gatherOptions,
+  inputSummary,
+  modelOptions,
+  namedFiles,
+  readMeasurements,
+  settingsOf,
+} from './inputs.ts';
+import { nothingApart } from './nothing-apart.ts';
+import type { Request } from './options.ts';
+import { openOutputFolder } from './output-folder.ts';
+import { installedPackage } from './package-root.ts';
+import { progressLine } from './progress.ts';
+import { textStyle, writeMessage, writeResult } from './terminal.ts';
+
+/** The main job: reads the files, solves, writes all outputs to `folderName` and the summary to stdout. */
+export async function solveCommand(request: Request, folderName: string): Promise<number> {
+  const { settings, earlier } = await settingsOf(request);
+  const folder = await openOutputFolder(folderName, { replaceResult: true, inputs: namedFiles(settings) });
+  const progress = progressLine(process.stderr, {
+    quiet: request.quiet,
+    style: textStyle(process.stderr),
+    environment: process.env,
+  });
+  try {
+    const readings = await readMeasurements(settings, progress);
+    const set = gatherTakes(readings, gatherOptions(settings));
+    const model = buildModel(set, await modelOptions(settings));
+    const onProgress = progress.step('solving');
+    const solution = await solve(set, model, { givenUncertainty: settings.u ?? undefined, onProgress });
+    const examination = examine(set, model, solution, { coverage: settings.coverage });
+    const result: Result = {
+      version: installedPackage().version,
+      settings: { ...settings },
+      coverage: settings.coverage,
+      input: inputSummary(readings, set),
+      set,
+      model,
+      solution,
+      examination,
+    };
+    await folder.write(outputFiles(result), (name) => progress.step(`writing ${name}`));
+    progress.clear();
+    for (const sentence of changedFiles(readings, earlier)) writeMessage(sentence);
+    await writeResult(answer(result, request, folderName));
+    return ending(result);
+  } finally {
+    progress.clear();
+  }
+}
+
+function answer(result: Result, request: Request, folder: string): string {
+  if (request.json) return jsonText(summaryRecord(result));
+  if (request.quiet) return '';
+  return ended(terminalSummary(result, { folder, style: textStyle(process.stdout) }));
+}
+
+function ending({ examination, set }: Result): number {
+  if (examination.units.some(({ counts }) => counts.ok + counts.datum > 0)) return EXIT.done;
+  writeMessage(nothingApart(examination.open, set.frequencies));
+  return EXIT.nothingApart;
+}
+
+/** The text with one line feed at its end. */
+export function ended(text: string): string {
+  return text.endsWith('\n') ? text : `${text}\n`;
+}
