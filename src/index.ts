@@ -3,6 +3,7 @@ export { type SolveOptions, solve } from './estimate/solve.ts';
 export type { Examination } from './findings/examination.ts';
 export { examine } from './findings/examine.ts';
 export { openFindings } from './findings/open-findings.ts';
+export { type Settled, settle } from './findings/settle.ts';
 export { buildModel } from './model/build-model.ts';
 export { findPatterns } from './model/find-patterns.ts';
 export type { Model } from './model/model.ts';

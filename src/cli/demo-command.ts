@@ -18,7 +18,14 @@ interface DemoFile {
 export async function demoCommand(folder: string, quiet: boolean): Promise<number> {
   await writeDemoSet(folder, await demoSet());
   const code = await solveCommand(
-    { given: { files: [join(folder, 'pairs.csv')] }, settingsFile: undefined, out: undefined, json: false, quiet },
+    {
+      given: { files: [join(folder, 'pairs.csv')] },
+      settingsFile: undefined,
+      out: undefined,
+      json: false,
+      strict: false,
+      quiet,
+    },
     join(folder, 'result'),
   );
   if (!quiet) await writeResult(whereToLook(folder));

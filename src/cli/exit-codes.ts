@@ -1,6 +1,8 @@
 /** What a script may rely on: how a run ended. */
 export const EXIT = {
   done: 0,
+  /** Done, and something was flagged; only where the user asks for it (`--strict`). */
+  flagged: 1,
   /** The command line cannot be understood. */
   usage: 2,
   /** Input that cannot be used, or a place that cannot be written. */

@@ -69,6 +69,7 @@ async function dispatch(argv: readonly string[]): Promise<number> {
       .description('Separates the responses of the units, with uncertainties, and writes all outputs to DIR.')
       .option('--out <DIR>', 'folder to write to (required)'),
   )
+    .option('--strict', 'end with 1 when anything is flagged')
     .option('--quiet', 'no summary and no progress')
     .addHelpText('after', SOLVE_HELP)
     .action(async (files: string[], values: Record<string, unknown>) => {

@@ -10,6 +10,8 @@ export interface Request {
   /** Output folder; absent for a command that writes nothing. */
   readonly out: string | undefined;
   readonly json: boolean;
+  /** Whether a flagged take changes the exit code. */
+  readonly strict: boolean;
   readonly quiet: boolean;
 }
 
@@ -29,6 +31,8 @@ export function addShapingOptions(command: Command): Command {
     .option('--band <LO..HI>', "use these frequencies only, such as '2 kHz..80 kHz'")
     .option('--grid <GRID>', '1/3, 1/6, 1/12, 1/24, as-measured or DECADE/N (default: as-measured)')
     .option('--coverage <P>', 'coverage probability of expanded uncertainties (default: 0.95)')
+    .option('--tolerance <DB>', 'effect of a partner that does not matter (default: 1)')
+    .option('--risk <P>', 'chance that a set with nothing wrong gets a take flagged (default: 0.05)')
     .option('--settings <JSON>', 'repeat the run of a summary.json; options named here win')
     .option('--json', 'print JSON instead of text');
 }
@@ -50,6 +54,8 @@ const SHAPING = [
   'band',
   'grid',
   'coverage',
+  'tolerance',
+  'risk',
 ] as const;
 
 /**
@@ -89,6 +95,7 @@ export function readRequest(
     settingsFile,
     out,
     json: values.json === true,
+    strict: values.strict === true,
     quiet: values.quiet === true,
   };
 }

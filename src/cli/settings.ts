@@ -1,3 +1,4 @@
+import { DEFAULT_RISK, DEFAULT_TOLERANCE } from '../findings/thresholds.ts';
 import { parseRange } from '../quantity/frequency.ts';
 import { parseGrid } from './grid-text.ts';
 
@@ -22,6 +23,10 @@ export interface Settings {
   readonly band: string | null;
   readonly grid: string;
   readonly coverage: number;
+  /** Effect of a partner in dB that does not matter. */
+  readonly tolerance: number;
+  /** Chance that a clean set gets any take flagged. */
+  readonly risk: number;
 }
 
 export const DEFAULT_SETTINGS: Settings = {
@@ -38,6 +43,8 @@ export const DEFAULT_SETTINGS: Settings = {
   band: null,
   grid: 'as-measured',
   coverage: 0.95,
+  tolerance: DEFAULT_TOLERANCE,
+  risk: DEFAULT_RISK,
 };
 
 /** What a setting may be. `read` takes the option's text as well as the value in a settings file; undefined: cannot be used. */
@@ -88,6 +95,16 @@ const RULES: { readonly [Name in keyof Settings]: Rule<Settings[Name]> } = {
     expected: 'a probability above 0 and below 1',
     example: '0.95',
     read: (value) => number(value, (p) => p > 0 && p < 1),
+  },
+  tolerance: {
+    expected: 'an effect in dB, above 0',
+    example: '1',
+    read: (value) => number(value, (effect) => effect > 0),
+  },
+  risk: {
+    expected: 'a probability above 0 and below 0.5',
+    example: '0.05',
+    read: (value) => number(value, (p) => p > 0 && p < 0.5),
   },
 };
 

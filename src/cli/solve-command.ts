@@ -1,5 +1,5 @@
-import { solve } from '../estimate/solve.ts';
 import { examine } from '../findings/examine.ts';
+import { settle } from '../findings/settle.ts';
 import { buildModel } from '../model/build-model.ts';
 import { jsonText } from '../report/json-text.ts';
 import { outputFiles } from '../report/output-files.ts';
@@ -38,8 +38,12 @@ export async function solveCommand(request: Request, folderName: string): Promis
     const set = gatherTakes(readings, gatherOptions(settings));
     const model = buildModel(set, await modelOptions(settings));
     const onProgress = progress.step('solving');
-    const solution = await solve(set, model, { givenUncertainty: settings.u ?? undefined, onProgress });
-    const examination = examine(set, model, solution, { coverage: settings.coverage });
+    const settled = await settle(set, model, {
+      givenUncertainty: settings.u ?? undefined,
+      risk: settings.risk,
+      onProgress,
+    });
+    const examination = examine(set, model, settled, settings);
     const result: Result = {
       version: installedPackage().version,
       settings: { ...settings },
@@ -47,14 +51,14 @@ export async function solveCommand(request: Request, folderName: string): Promis
       input: inputSummary(readings, set),
       set,
       model,
-      solution,
+      solution: settled.solution,
       examination,
     };
     await folder.write(outputFiles(result), (name) => progress.step(`writing ${name}`));
     progress.clear();
     for (const sentence of changedFiles(readings, earlier)) writeMessage(sentence);
     await writeResult(answer(result, request, folderName));
-    return ending(result);
+    return ending(result, request.strict);
   } finally {
     progress.clear();
   }
@@ -66,10 +70,21 @@ function answer(result: Result, request: Request, folder: string): string {
   return ended(terminalSummary(result, { folder, style: textStyle(process.stdout) }));
 }
 
-function ending({ examination, set }: Result): number {
-  if (examination.units.some(({ counts }) => counts.ok + counts.datum > 0)) return EXIT.done;
+function ending({ examination, set }: Result, strict: boolean): number {
+  if (examination.units.some(({ counts }) => counts.ok + counts.datum > 0)) {
+    return strict && isSomethingFlagged(examination) ? EXIT.flagged : EXIT.done;
+  }
   writeMessage(nothingApart(examination.open, set.frequencies));
   return EXIT.nothingApart;
+}
+
+/** A take that disagrees, a tie, or a unit that does not hold. */
+function isSomethingFlagged({ takes, holds, whole }: Result['examination']): boolean {
+  return (
+    whole.isModelFailing ||
+    takes.some(({ verdict }) => verdict === 'flagged' || verdict === 'tied') ||
+    holds.some(({ verdict }) => verdict === 'broken' || verdict === 'strained')
+  );
 }
 
 /** The text with one line feed at its end. */

@@ -25,14 +25,19 @@ export interface FactoredBlock {
   readonly coupling: Float64Array;
   /** G × G: what remains of the gains' normal matrix when the links are eliminated (Schur complement). */
   readonly schur: Float64Array;
+  /** The restraints as they stand in the normal equations: √κ c. */
+  readonly restraints: readonly Float64Array[];
   /** 1-norm condition number of the restrained normal matrix. */
   readonly condition: number;
   /** Whether the condition was too poor for the Cholesky factor; without a fallback the block is then of no use. */
   readonly poor: boolean;
 }
 
-/** Beyond this condition number of the normal matrix, the design itself is factored instead. Common practice, no source. */
-const POOR_CONDITION = 1e10;
+/**
+ * Beyond this condition number of the normal matrix, the design itself is factored instead: rounding would take more
+ * than a tenth of the 1e-9 that is promised for the covariance.
+ */
+const POOR_CONDITION = 1e7;
 
 /**
  * Assembles and factors a block. A restraint c joins the normal matrix N as κ c cᵀ; then the restrained covariance is
@@ -67,7 +72,7 @@ export function factorBlock(system: BlockSystem, fallback: RankRevealingInverse 
   // Each z is taken from the inverse before any is subtracted: the identity above is for all restraints together.
   const corrections = restraints.map((restraint) => multiply(inverse, restraint, n));
   for (const z of corrections) addOuterProduct(covariance, z, n, -1);
-  return { covariance, solve, coupling, schur, condition, poor };
+  return { covariance, solve, coupling, schur, restraints, condition, poor };
 }
 
 /** (Xᵀ X)⁻¹, row-major, of a dense design X by way of its singular values; throws where the rank is not full. */

@@ -33,11 +33,13 @@ export function repeatScatter(set: TakeSet): BandScatter[] {
     }
     row += group.length;
   }
-  const share = shareForVariance(neighbourCorrelation(deviations, row, width));
+  const frequencies = new Float64Array(bands.length);
+  for (const band of bandOf) frequencies[band] = frequencies[band]! + 1;
+  const correlation = neighbourCorrelation(deviations, row, width);
   return bands.map((band, b) => ({
     from: band.from,
     to: band.to,
     standardDeviation: dof[b]! > 0 ? Math.sqrt(squares[b]! / dof[b]!) : Number.NaN,
-    dof: dof[b]! * share,
+    dof: dof[b]! * shareForVariance(correlation, frequencies[b]!),
   }));
 }

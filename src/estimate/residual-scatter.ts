@@ -24,7 +24,9 @@ export function residualScatter(set: TakeSet, swept: Sweep): ReadingUncertainty 
     squares[band] = squares[band]! + residual * residual;
     freedom[band] = freedom[band]! + swept.redundancy[cell]!;
   }
-  const share = shareForVariance(neighbourCorrelation(swept.residuals, set.takes.length, width));
+  const frequencies = new Float64Array(bands.length);
+  for (const band of bandOf) frequencies[band] = frequencies[band]! + 1;
+  const correlation = neighbourCorrelation(swept.residuals, set.takes.length, width);
   const scatter = bands.map((band, b): BandScatter => {
     const deviation = Math.sqrt(squares[b]! / freedom[b]!);
     const known = freedom[b]! > 0 && deviation > ROUNDING;
@@ -32,7 +34,7 @@ export function residualScatter(set: TakeSet, swept: Sweep): ReadingUncertainty 
       from: band.from,
       to: band.to,
       standardDeviation: known ? deviation : Number.NaN,
-      dof: known ? freedom[b]! * share : 0,
+      dof: known ? freedom[b]! * shareForVariance(correlation, frequencies[b]!) : 0,
     };
   });
   const found = scatter.some((band) => band.dof > 0);

@@ -5,6 +5,9 @@ import type { CovarianceBlock, GainEstimate, ReadingUncertainty, Solution } from
 import { LINK_STATUS } from './solution.ts';
 import type { Sweep } from './sweep.ts';
 
+/** A variance below this part of the whole is rounding, left by taking the part of the known values away. */
+const NO_PART = 1e-12;
+
 /** A gain movement that shifts a link by less than this part is rounding. */
 const MOVES = 1e-7;
 
@@ -140,7 +143,8 @@ function linkStatuses(
  */
 function effectiveDof(total: number, readings: number, readingsDof: number, gains: number, gainsDof: number): number {
   if (Number.isNaN(total)) return Number.NaN;
-  const spent = (readings > 0 ? readings ** 2 / readingsDof : 0) + (gains > 0 ? gains ** 2 / gainsDof : 0);
+  const spent =
+    (readings > NO_PART * total ? readings ** 2 / readingsDof : 0) + (gains > 0 ? gains ** 2 / gainsDof : 0);
   return spent > 0 ? total ** 2 / spent : Number.POSITIVE_INFINITY;
 }
 

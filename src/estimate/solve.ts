@@ -2,6 +2,7 @@ import { findPatterns, type Patterns } from '../model/find-patterns.ts';
 import type { Model } from '../model/model.ts';
 import type { TakeSet } from '../takes/take-set.ts';
 import type { RankRevealingInverse } from './factor-block.ts';
+import { withLeftOutTakes } from './left-out-takes.ts';
 import { readingUncertainty } from './reading-uncertainty.ts';
 import { residualScatter } from './residual-scatter.ts';
 import type { ReadingUncertainty, Solution } from './solution.ts';
@@ -11,6 +12,8 @@ import { type Sweep, sweep } from './sweep.ts';
 export interface SolveOptions {
   /** Standard uncertainty of a reading in dB, used where the input has none of its own. */
   readonly givenUncertainty?: number | undefined;
+  /** Indices of takes to keep out of the solution; their residuals against it are given all the same. */
+  readonly without?: ReadonlySet<number> | undefined;
   /** Called with the frequencies done and in all; several passes may be made. */
   readonly onProgress?: (done: number, total: number) => void;
 }
@@ -27,6 +30,15 @@ const SETTLED = 1e-9;
  * Cost: proportional to the readings, plus links³ a block of frequencies with weights of its own.
  */
 export async function solve(set: TakeSet, model: Model, options: SolveOptions = {}): Promise<Solution> {
+  const { without } = options;
+  if (without === undefined || without.size === 0) return solveAll(set, model, options);
+  const width = set.frequencies.length;
+  const levels = set.levels.map((level, cell) => (without.has(Math.floor(cell / width)) ? Number.NaN : level));
+  const solution = await solveAll({ ...set, levels }, model, options);
+  return withLeftOutTakes(set, model, solution, without);
+}
+
+async function solveAll(set: TakeSet, model: Model, options: SolveOptions): Promise<Solution> {
   const patterns = findPatterns(set, model);
   const known = readingUncertainty(set, options.givenUncertainty);
   const pass = passWith(set, model, patterns, options.onProgress);

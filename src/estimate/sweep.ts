@@ -3,6 +3,7 @@ import type { Model } from '../model/model.ts';
 import type { TakeSet } from '../takes/take-set.ts';
 import { type Block, type Blocks, blocksOf } from './blocks.ts';
 import { type FactoredBlock, factorBlock, type RankRevealingInverse } from './factor-block.ts';
+import { knownPartRemoved, refineLinks } from './refine-links.ts';
 import { type SolvedGains, solveGains } from './solve-gains.ts';
 
 /** What one pass over all frequencies gives. L links of each frequency, F frequencies, T takes; layouts as in Solution. */
@@ -19,6 +20,9 @@ export interface Sweep {
   /** Whether a block was too poorly conditioned for the factor at hand. */
   readonly needsFallback: boolean;
 }
+
+/** Above this condition number the normal equations cost more digits than the 1e-9 that is promised leaves room for. */
+const REFINED_ABOVE = 1e4;
 
 /**
  * Solves all frequencies: factors each block once, sums what the blocks say of the shared gains, solves the gains, and
@@ -68,6 +72,10 @@ export function sweep(
   });
   const gains = solveGains(schur, gainSide, gainWeights);
   if (gainCount > 0) substituteGains(estimates, blocks, gains, n);
+  for (const { block, factored } of blocks) {
+    if (!(factored.condition > REFINED_ABOVE)) continue;
+    for (const f of block.frequencies) refineLinks(set, model, block.system, factored, f, gains.values, estimates);
+  }
   const residuals = new Float64Array(set.levels.length).fill(Number.NaN);
   const redundancy = new Float64Array(set.levels.length).fill(Number.NaN);
   for (const { block, factored } of blocks) {
@@ -97,10 +105,9 @@ function rightHandSide(
   gainSide: Float64Array,
 ): Float64Array {
   const { take, start, link, factor, gain } = system.incidence;
-  const width = set.frequencies.length;
   const side = new Float64Array(system.links);
   for (let r = 0; r < take.length; r++) {
-    const weighted = system.weights[r]! * knownPartRemoved(set, model, take[r]!, f, width);
+    const weighted = system.weights[r]! * knownPartRemoved(set, model, take[r]!, f);
     for (let i = start[r]!; i < start[r + 1]!; i++) side[link[i]!] = side[link[i]!]! + factor[i]! * weighted;
     const g = gain[r]!;
     if (g >= 0) gainSide[g] = gainSide[g]! + weighted / unitVariance[f]!;
@@ -109,12 +116,6 @@ function rightHandSide(
     side[prior] = side[prior]! + system.priorWeights[k]! * model.links[prior]!.prior!.value[f]!;
   });
   return side;
-}
-
-function knownPartRemoved(set: TakeSet, model: Model, take: number, f: number, width: number): number {
-  const known = model.chains[take]!.known;
-  const level = set.levels[take * width + f]!;
-  return known === undefined ? level : level - known[f]!;
 }
 
 function substituteGains(estimates: Float64Array, blocks: Sweep['blocks'], { values }: SolvedGains, n: number): void {
@@ -144,7 +145,7 @@ function residualsAt(
   for (let r = 0; r < take.length; r++) {
     let fitted = gain[r]! >= 0 ? gains.values[gain[r]!]! : 0;
     for (let i = start[r]!; i < start[r + 1]!; i++) fitted += factor[i]! * estimates[offset + link[i]!]!;
-    residuals[take[r]! * width + f] = knownPartRemoved(set, model, take[r]!, f, width) - fitted;
+    residuals[take[r]! * width + f] = knownPartRemoved(set, model, take[r]!, f) - fitted;
   }
 }
 

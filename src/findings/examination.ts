@@ -1,4 +1,6 @@
 import type { LinkStatus } from '../model/separability.ts';
+import type { ExplainedTake } from './explanations.ts';
+import type { HoldFinding } from './holds.ts';
 
 /** A stretch of frequencies with a mean level in it. */
 export interface BandLevel {
@@ -15,14 +17,33 @@ export interface TakeFinding {
   readonly take: number;
   readonly readings: number;
   readonly rmsResidual: number;
-  /** Constant by which the take stands off what all other takes say of it, in dB, and its standard uncertainty. */
+  /**
+   * Constant by which the take stands off what all other takes say of it, in dB, and its standard uncertainty from the
+   * scatter of repeats, seatings and partners.
+   */
   readonly offset: number;
   readonly offsetUncertainty: number;
+  /** Smallest constant shift that the test would find, in dB, at the risk and power of `thresholds.ts`. */
+  readonly smallestShift: number;
   /** The third-octave band with the largest mean residual; absent where there are no readings. */
   readonly worst: BandLevel | undefined;
-  /** Mean redundancy of the take's readings: 0 means that nothing checks it. */
+  /** Mean redundancy of the take's readings: 0 means that nothing checks it; NaN where it was left out. */
   readonly redundancy: number;
+  /** Corrected for the number of tests and takes. */
+  readonly pValue: number;
+  readonly verdict: TakeVerdict;
+  /** Whether it was kept out of the solution. */
+  readonly isLeftOut: boolean;
+  /** Other takes that could be at fault in its place. */
+  readonly tiedWith: readonly number[];
+  /** What it reads like; absent unless flagged or tied. */
+  readonly explained: ExplainedTake | undefined;
+  /** The take that would check it, or settle the tie; absent where none is needed or none can be named. */
+  readonly cure: ExtraTake | undefined;
 }
+
+/** `not tested`: no scatter is known to test with. */
+export type TakeVerdict = 'agrees' | 'flagged' | 'tied' | 'uncheckable' | 'not tested';
 
 /** The same over all takes of an emitter and a receiver. */
 export interface PairFinding {
@@ -32,6 +53,9 @@ export interface PairFinding {
   readonly rmsResidual: number;
   readonly offset: number;
   readonly redundancy: number;
+  /** The smallest of its takes, and the verdict of the worst. */
+  readonly pValue: number;
+  readonly verdict: TakeVerdict;
 }
 
 /** One reported response in figures for a summary. */
@@ -102,6 +126,8 @@ export interface WholeFinding {
   readonly degreesOfFreedom: number;
   /** Σ (residual/u)² per degree of freedom: 1 where the uncertainties explain the residuals; NaN where u comes from them or is absent. */
   readonly chiSquarePerDof: number;
+  /** More takes disagree than can be left out: the additive model itself fails. */
+  readonly isModelFailing: boolean;
 }
 
 /** Everything the solution says of takes, pairs and units, as plain records; sentences are made of them in the report. */
@@ -110,5 +136,6 @@ export interface Examination {
   readonly pairs: readonly PairFinding[];
   readonly units: readonly UnitFinding[];
   readonly open: readonly OpenFinding[];
+  readonly holds: readonly HoldFinding[];
   readonly whole: WholeFinding;
 }

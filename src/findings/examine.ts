@@ -1,74 +1,81 @@
 import { LINK_STATUS, type Solution } from '../estimate/solution.ts';
 import { type ThirdOctaves, thirdOctaves } from '../estimate/third-octaves.ts';
 import type { Model } from '../model/model.ts';
+import { detectability } from '../numeric/detectability.ts';
 import { coverageFactors } from '../numeric/student-t.ts';
 import type { TakeSet } from '../takes/take-set.ts';
+import { checkingTake } from './checking-take.ts';
 import type {
   BandLevel,
   Examination,
   OpenFinding,
   PairFinding,
   TakeFinding,
+  TakeVerdict,
   UnitFinding,
   WholeFinding,
 } from './examination.ts';
+import { holdFindings } from './holds.ts';
 import { openFindings } from './open-findings.ts';
+import type { Settled } from './settle.ts';
+import { DETECTION_POWER, DETECTION_RISK } from './thresholds.ts';
 
 export interface ExamineOptions {
   /** Coverage probability of expanded uncertainties, such as 0.95. */
   readonly coverage: number;
+  /** Effect of a partner in dB that does not matter. */
+  readonly tolerance: number;
+  /** Chance that a clean set gets any take flagged. */
+  readonly risk: number;
 }
 
-/** Judges a solution: takes, pairs, units, the whole, and what is open. Cost: linear in the readings. */
-export function examine(set: TakeSet, model: Model, solution: Solution, options: ExamineOptions): Examination {
+/** Judges a settled solution: takes, pairs, units, the whole, and what is open. Cost: linear in the readings. */
+export function examine(set: TakeSet, model: Model, settled: Settled, options: ExamineOptions): Examination {
+  const { solution, screening } = settled;
   const bands = thirdOctaves(set.frequencies);
-  const takes = set.takes.map((_, take) => takeFinding(set, solution, take, bands));
+  const takes = set.takes.map((_, take) => takeFinding(set, model, settled, take, bands));
   const factorOf = coverageFactors(options.coverage);
   return {
     takes,
     pairs: pairFindings(set, takes),
     units: model.responses.map((_, response) => unitFinding(set, model, solution, response, factorOf)),
     open: [...openFindings(set, model, solution), ...gainFindings(model, solution)],
-    whole: wholeFinding(solution),
+    holds: holdFindings(model, screening.levels, options),
+    whole: wholeFinding(solution, screening.isModelFailing),
   };
 }
 
-/**
- * The offset is what a constant added to this take alone would have to be, had the take been measured with it: the shift
- * δ of one take moves its weighted residuals by r δ, so δ = Σ (v/u²) / Σ (r/u²), with u² (δ) = 1 / Σ (r/u²), all
- * frequencies taken as independent. Source: Baarda 1968, A testing procedure for use in geodetic networks (one-dimensional
- * alternative), formula from memory.
- */
-function takeFinding(set: TakeSet, solution: Solution, take: number, bands: ThirdOctaves): TakeFinding {
+const DETECTABILITY = detectability(DETECTION_RISK, DETECTION_POWER);
+
+function takeFinding(set: TakeSet, model: Model, settled: Settled, take: number, bands: ThirdOctaves): TakeFinding {
+  const { solution, screening, leftOut } = settled;
   const width = set.frequencies.length;
   let readings = 0;
   let squares = 0;
   let redundancy = 0;
-  let shifted = 0;
-  let precision = 0;
   for (let f = 0; f < width; f++) {
     const residual = solution.residuals[take * width + f]!;
     if (Number.isNaN(residual)) continue;
-    const r = solution.redundancy[take * width + f]!;
-    const u = solution.readingUncertainty.values[take * width + f]!;
     readings++;
     squares += residual * residual;
-    redundancy += r;
-    // Without an uncertainty all readings weigh the same, and the offset has none of its own.
-    const weight = Number.isNaN(u) ? 1 : 1 / (u * u);
-    shifted += residual * weight;
-    precision += r * weight;
+    redundancy += solution.redundancy[take * width + f]!;
   }
-  const checked = precision > 0;
-  const known = solution.readingUncertainty.source !== 'none';
+  const { pValue, verdict, shift, shiftUncertainty, tiedWith } = screening.takes[take]!;
   return {
     take,
     readings,
     rmsResidual: readings > 0 ? Math.sqrt(squares / readings) : Number.NaN,
-    offset: checked ? shifted / precision : Number.NaN,
-    offsetUncertainty: checked && known ? 1 / Math.sqrt(precision) : Number.NaN,
+    offset: shift,
+    offsetUncertainty: shiftUncertainty,
+    smallestShift: DETECTABILITY * shiftUncertainty,
     worst: worstBand(set, solution, take, bands),
     redundancy: readings > 0 ? redundancy / readings : Number.NaN,
+    pValue,
+    verdict,
+    isLeftOut: leftOut.has(take),
+    tiedWith,
+    explained: settled.explained.find((explained) => explained.take === take),
+    cure: verdict === 'uncheckable' || verdict === 'tied' ? checkingTake(set, model, take) : undefined,
   };
 }
 
@@ -116,8 +123,16 @@ function pairFindings(set: TakeSet, takes: readonly TakeFinding[]): PairFinding[
       rmsResidual: Math.sqrt(mean((take) => take.rmsResidual ** 2)),
       offset: mean((take) => take.offset),
       redundancy: mean((take) => take.redundancy),
+      pValue: used.reduce((least, { pValue }) => (pValue < least || Number.isNaN(least) ? pValue : least), Number.NaN),
+      verdict: worstVerdict(used),
     };
   });
+}
+
+const WORST_FIRST: readonly TakeVerdict[] = ['flagged', 'tied', 'uncheckable', 'not tested', 'agrees'];
+
+function worstVerdict(takes: readonly TakeFinding[]): TakeVerdict {
+  return WORST_FIRST.find((verdict) => takes.some((take) => take.verdict === verdict)) ?? 'not tested';
 }
 
 function unitFinding(
@@ -182,15 +197,16 @@ function gainFindings(model: Model, solution: Solution): OpenFinding[] {
   }));
 }
 
-function wholeFinding(solution: Solution): WholeFinding {
-  const { residuals, readingUncertainty } = solution;
+function wholeFinding(solution: Solution, isModelFailing: boolean): WholeFinding {
+  const { residuals, redundancy, readingUncertainty } = solution;
   let count = 0;
   let squares = 0;
   let weighted = 0;
   let weightedDof = 0;
   for (let cell = 0; cell < residuals.length; cell++) {
     const residual = residuals[cell]!;
-    if (Number.isNaN(residual)) continue;
+    // Takes that were left out have a residual, and no part in the fit.
+    if (Number.isNaN(residual) || Number.isNaN(redundancy[cell]!)) continue;
     count++;
     squares += residual * residual;
     // Bands without repeats have no uncertainty to hold against.
@@ -206,6 +222,7 @@ function wholeFinding(solution: Solution): WholeFinding {
     residualDeviation: degreesOfFreedom > 0 ? Math.sqrt(squares / degreesOfFreedom) : Number.NaN,
     degreesOfFreedom,
     chiSquarePerDof: weightedDof > 0 && !isOwn ? weighted / weightedDof : Number.NaN,
+    isModelFailing,
   };
 }
 

@@ -1,9 +1,9 @@
 import type { Patterns } from '../model/find-patterns.ts';
 import type { Model } from '../model/model.ts';
-import type { FreeDirection, Part, Pattern } from '../model/separability.ts';
+import type { FreeDirection, Pattern } from '../model/separability.ts';
 import type { TakeSet } from '../takes/take-set.ts';
 import type { ExtraTake, OpenFinding } from './examination.ts';
-import { takeOverPath, takesForOpenPart, takeToJoin } from './extra-takes.ts';
+import { takeOverPath, takesForOpenPart, takesToJoin } from './extra-takes.ts';
 
 /** A movement below this is rounding. */
 const MOVES = 1e-9;
@@ -35,19 +35,19 @@ function findingOf(set: TakeSet, model: Model, pattern: Pattern, direction: Free
   const path = moving.find((link) => model.links[link]!.kind === 'path' && direction.restraint[link] === 1);
   if (path !== undefined) {
     const extra = direction.status === 'open' ? takeOverPath(model, pattern, set.takes, path) : undefined;
-    return { ...common, kind: 'path', responses: names(moving), sides: undefined, extraTakes: listOf(extra) };
+    const kind = isUnmeasured(model, pattern, moving) ? 'not measured' : 'path';
+    return { ...common, kind, responses: names(moving), sides: undefined, extraTakes: listOf(extra) };
   }
   const part = pattern.separability.parts.find((candidate) => candidate.links.includes(moving[0]!))!;
   const sides = part.sides!;
   const both = [names(sides[0]), names(sides[1])] as const;
   if (model.choice.kind === 'directional') {
-    const extra = takeToJoin(model, pattern, part);
     const kind = part.links.length === 1 ? 'not measured' : 'one constant';
-    return { ...common, kind, responses: names(moving), sides: both, extraTakes: listOf(extra) };
+    return { ...common, kind, responses: names(moving), sides: both, extraTakes: takesToJoin(model, pattern, part) };
   }
   return {
     ...common,
-    kind: isUnmeasured(model, pattern, part) ? 'not measured' : 'no odd loop',
+    kind: isUnmeasured(model, pattern, part.links) ? 'not measured' : 'no odd loop',
     responses: names(moving),
     sides: both,
     extraTakes: takesForOpenPart(model, pattern, part),
@@ -58,8 +58,8 @@ function movingLinks(direction: FreeDirection): number[] {
   return [...direction.movement.keys()].filter((link) => Math.abs(direction.movement[link]!) > MOVES);
 }
 
-function isUnmeasured(model: Model, pattern: Pattern, part: Part): boolean {
-  return part.links.length === 1 && !pattern.takes.some((t) => model.chains[t]!.links.includes(part.links[0]!));
+function isUnmeasured(model: Model, pattern: Pattern, links: readonly number[]): boolean {
+  return links.length === 1 && !pattern.takes.some((t) => model.chains[t]!.links.includes(links[0]!));
 }
 
 function listOf(extra: ExtraTake | undefined): ExtraTake[] {

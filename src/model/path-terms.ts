@@ -1,8 +1,9 @@
 import type { InputFault } from '../quantity/input-fault.ts';
+import type { PathLevel } from '../readings/references.ts';
 import type { TakeSet } from '../takes/take-set.ts';
 import { interpolateOverLog } from './interpolate.ts';
 import type { Prior } from './model.ts';
-import type { ModelOptions, PathLevel } from './model-options.ts';
+import type { ModelOptions } from './model-options.ts';
 
 /** What the paths add to the chains. */
 export interface PathTerms {
@@ -39,6 +40,7 @@ export function pathTerms(set: TakeSet, option: ModelOptions['path'], faults: In
       exact.set(label, interpolateOverLog(entry.frequency, entry.level, set.frequencies));
       continue;
     }
+    if (entry?.uncertainty.some(Number.isNaN)) faults.push(someWithoutUncertainty(label));
     numberOf.set(label, links.length);
     links.push({ name: label === '' ? 'path without a name' : `path ${label}`, prior: entry && priorOf(entry, set) });
   }
@@ -67,5 +69,14 @@ function noSuchPath(table: readonly PathLevel[], labels: readonly string[]): Inp
         ? 'takes with a `path` column: no take names its path'
         : `levels for some of ${named.join(', ')}`,
     remedy: 'Use the same names in the takes and in the table of path levels.',
+  };
+}
+
+function someWithoutUncertainty(path: string): InputFault {
+  return {
+    place: { file: '--path', column: 'u_db' },
+    found: `levels of the path ${path} of which some have an uncertainty and some have none`,
+    expected: 'an uncertainty for all of them (a known path), or for none (an exact one)',
+    remedy: 'Fill in `u_db` for this path, or leave it out.',
   };
 }

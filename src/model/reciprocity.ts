@@ -48,7 +48,7 @@ export function testReciprocity(set: TakeSet): ReciprocityTest {
   );
   const rest = new Float64Array(pairs.length * bands.length).fill(Number.NaN);
   const sums = bands.map((_, band) => splitSquares(pairs, band, rest, bands.length));
-  const share = shareForVariance(neighbourCorrelation(rest, pairs.length, bands.length));
+  const share = shareForVariance(neighbourCorrelation(rest, pairs.length, bands.length), bands.length);
   const whole = sums.reduce(
     (total, one) => ({
       unit: total.unit + one.unit,

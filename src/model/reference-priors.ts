@@ -1,8 +1,8 @@
 import type { InputFault } from '../quantity/input-fault.ts';
+import type { Reference } from '../readings/references.ts';
 import type { TakeSet } from '../takes/take-set.ts';
 import { interpolateOverLog } from './interpolate.ts';
 import type { ModelChoice, Prior, Response } from './model.ts';
-import type { Reference } from './model-options.ts';
 import { unknownUnit } from './unknown-unit.ts';
 
 /**

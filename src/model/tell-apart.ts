@@ -167,7 +167,8 @@ function pathFreedoms(
       addScaled(other, movement, -other[path]!);
     }
     const stretch = stretchOf[path]!;
-    const isDatum = !fixedStretches.has(stretch);
+    // A path that no take goes over is alone in its stretch: a convention would make a number out of nothing.
+    const isDatum = !fixedStretches.has(stretch) && takes.some((take) => model.chains[take]!.links.includes(path));
     fixedStretches.add(stretch);
     freedoms.push({
       movement,

@@ -29,7 +29,14 @@ export function shareForMean(rho: number): number {
   return (1 - rho) / (1 + rho);
 }
 
-/** The same for a *variance* (mean square): (1 − ρ²) / (1 + ρ²). Same source. */
-export function shareForVariance(rho: number): number {
-  return (1 - rho * rho) / (1 + rho * rho);
+/**
+ * The same for a *variance* (mean square) of `count` values: 1 / (1 + 2 Σ (1 − k/n) ρ²ᵏ), k from 1 to n − 1, which is
+ * (1 − ρ²) / (1 + ρ²) for a long series and 1/n where all values say the same: n values are never worth less than one.
+ * Same source.
+ */
+export function shareForVariance(rho: number, count = Number.POSITIVE_INFINITY): number {
+  const q = rho * rho;
+  if (count === Number.POSITIVE_INFINITY) return (1 - q) / (1 + q);
+  const sum = q / (1 - q) - (q * (1 - q ** count)) / (count * (1 - q) ** 2);
+  return 1 / (1 + 2 * sum);
 }

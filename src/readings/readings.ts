@@ -1,10 +1,8 @@
-import type { InputFault } from '../quantity/input-fault.ts';
-
 /** What the user's files say of one take: its identity and what was noted with it. An empty string means 'not given'. */
 export interface TakeHeader {
-  /** File as the user named it. */
+  /** File that holds the readings, as the user named it (bench log: the named file, with the log's folder before it). */
   readonly file: string;
-  /** Line of the take's first reading (bench log: its row in the log; wide: the header line). */
+  /** Line of the take's first reading in `file` (wide: the header line). */
   readonly line: number;
   readonly emitter: string;
   readonly receiver: string;
@@ -26,7 +24,9 @@ export interface TakeHeader {
 export interface UnusedRow {
   readonly file: string;
   readonly line: number;
+  /** The column's header as the user wrote it; empty where the row as a whole is meant. */
   readonly column: string;
+  /** What stood there, as it was written; of a whole row at most the first 200 characters. */
   readonly value: string;
   readonly reason: string;
 }
@@ -55,7 +55,7 @@ export interface Readings {
   readonly frequency: Float64Array;
   /** Decibels. */
   readonly level: Float64Array;
-  /** Line in the take's file (bench log: in the named file). */
+  /** Line in the take's file. */
   readonly line: Int32Array;
   /** Standard uncertainty in dB; NaN where a row gives none; absent where no file has the column. The same for the rest. */
   readonly uncertainty: Float64Array | undefined;
@@ -75,6 +75,3 @@ export interface ReadingOptions {
   /** Called now and then with the bytes read so far and in all. */
   readonly onProgress?: (done: number, total: number) => void;
 }
-
-/** Faults met while reading; those that stop the run are thrown together as an InputError at the end. */
-export type FaultCollector = InputFault[];

@@ -1,5 +1,5 @@
 /** Frequencies that differ by less than this part are one and the same: unit conversion leaves the last bits open. */
-const SAME_FREQUENCY = 1e-9;
+export const SAME_FREQUENCY = 1e-9;
 
 /** The different frequencies among `values`, ascending, and for each value the index of its frequency. */
 export interface FrequencyTable {

@@ -1,7 +1,7 @@
 import { type FrequencyRange, frequencyText } from '../quantity/frequency.ts';
 import { InputError, type InputFault } from '../quantity/input-fault.ts';
 import type { Readings, UnusedRow } from '../readings/readings.ts';
-import { type FrequencyTable, frequencyTable } from './frequency-table.ts';
+import { type FrequencyTable, frequencyTable, SAME_FREQUENCY } from './frequency-table.ts';
 import { type Spectrum, toOctaveBands, toPointsPerDecade } from './regrid.ts';
 import type { Grid, Take, TakeSet } from './take-set.ts';
 import { type TakeSpectra, takeSpectra } from './take-spectra.ts';
@@ -37,8 +37,10 @@ function takeId(index: number, count: number): string {
 
 function withinBand(readings: Readings, band: FrequencyRange, notices: string[]): Readings {
   const keep: number[] = [];
+  // 16.1 kHz is 16100.000000000002 Hz: the ends are included as a reader understands them.
+  const [from, to] = [band.from * (1 - SAME_FREQUENCY), band.to * (1 + SAME_FREQUENCY)];
   for (let i = 0; i < readings.count; i++) {
-    if (readings.frequency[i]! >= band.from && readings.frequency[i]! <= band.to) keep.push(i);
+    if (readings.frequency[i]! >= from && readings.frequency[i]! <= to) keep.push(i);
   }
   const range = `${frequencyText(band.from)} to ${frequencyText(band.to)}`;
   if (keep.length === 0) {

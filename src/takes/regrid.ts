@@ -57,7 +57,8 @@ function halfStep(frequency: readonly number[], at: number): number {
 }
 
 function bandMean(level: readonly number[], uncertainty: readonly number[], from: number, to: number) {
-  const top = Math.max(...level.slice(from, to));
+  let top = Number.NEGATIVE_INFINITY;
+  for (let i = from; i < to; i++) top = Math.max(top, level[i]!);
   let power = 0;
   let variance = 0;
   for (let i = from; i < to; i++) {

@@ -25,16 +25,26 @@ export async function runStages(file: string, folder: string, report: (cost: Sta
     library.gatherTakes(readings, { grid: { kind: 'as measured' }, band: undefined }),
   );
   const model = await timed('model', () => library.buildModel(set, library.DEFAULT_MODEL_OPTIONS));
-  const solution = await timed('solve', () => library.solve(set, model));
-  const coverage = 0.95;
-  const examination = await timed('examine', () => library.examine(set, model, solution, { coverage }));
+  await timed('solve', () => library.solve(set, model));
+  const [coverage, risk, tolerance] = [0.95, 0.05, 1];
+  const settled = await timed('settle', () => library.settle(set, model, { risk }));
+  const examination = await timed('examine', () => library.examine(set, model, settled, { coverage, risk, tolerance }));
   const input = {
     files: readings.files,
     readings: readings.count,
     unused: [...readings.unused, ...set.unused],
     notices: [...readings.notices, ...set.notices],
   };
-  const result = { version: 'bench', settings: {}, coverage, input, set, model, solution, examination };
+  const result = {
+    version: 'bench',
+    settings: {},
+    coverage,
+    input,
+    set,
+    model,
+    solution: settled.solution,
+    examination,
+  };
   await timed('write', () => writeOutputs(library, result, folder));
 }
 

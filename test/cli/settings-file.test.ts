@@ -53,7 +53,7 @@ describe('readSettingsFile', () => {
 });
 
 describe('settingsOf', () => {
-  const request = { settingsFile: undefined, out: undefined, json: false, quiet: false };
+  const request = { settingsFile: undefined, out: undefined, json: false, strict: false, quiet: false };
 
   it('takes the command line before the settings file, and that before the defaults', async () => {
     const settingsFile = fileWith({ files: ['a.csv'], model: 'reciprocal', u: 0.3, reversible: ['A'] });

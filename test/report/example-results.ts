@@ -1,7 +1,7 @@
 /** Results made by the real steps from a few lines, for tests of what is written about them. */
-import { solve } from '../../src/estimate/solve.ts';
 import { examine } from '../../src/findings/examine.ts';
 import { openFindings } from '../../src/findings/open-findings.ts';
+import { settle } from '../../src/findings/settle.ts';
 import { buildModel } from '../../src/model/build-model.ts';
 import { findPatterns } from '../../src/model/find-patterns.ts';
 import { DEFAULT_MODEL_OPTIONS, type ModelOptions } from '../../src/model/model-options.ts';
@@ -28,8 +28,9 @@ const inputOf = ({ lines, frequencies, input }: Example): InputSummary => ({
 export async function resultOf(example: Example): Promise<Result> {
   const set = takeSetOf(example.frequencies, example.lines);
   const model = buildModel(set, { ...DEFAULT_MODEL_OPTIONS, ...example.options });
-  const solution = await solve(set, model, { givenUncertainty: example.u });
   const coverage = 0.95;
+  const risk = 0.05;
+  const settled = await settle(set, model, { givenUncertainty: example.u, risk });
   return {
     version: '1.2.3',
     settings: { files: ['bench.csv'], u: example.u ?? null },
@@ -37,8 +38,8 @@ export async function resultOf(example: Example): Promise<Result> {
     input: inputOf(example),
     set,
     model,
-    solution,
-    examination: examine(set, model, solution, { coverage }),
+    solution: settled.solution,
+    examination: examine(set, model, settled, { coverage, risk, tolerance: 1 }),
   };
 }
 

@@ -1,0 +1,40 @@
+import type { Model } from '../model/model.ts';
+import type { TakeSet } from '../takes/take-set.ts';
+
+/** Takes that the model explains by the same links: what can differ between them is seating and noise. */
+export interface ChainGroup {
+  /** Links of each frequency with their factors. */
+  readonly links: readonly number[];
+  readonly factors: readonly number[];
+  /** The two ends of the chain as response links; the same one twice for a twin reading. */
+  readonly ends: readonly [number, number];
+  /** Indices into the takes, grouped by seating: takes of one group differ in nothing but the repeat. */
+  readonly seatings: readonly (readonly number[])[];
+}
+
+/**
+ * Groups takes by chain and, within a chain, by seating. Seatings of one chain count as independent of each other, and of
+ * those of other chains. Gains shared by all frequencies do not tell chains apart.
+ */
+export function chainGroups(set: TakeSet, model: Model): ChainGroup[] {
+  const groups = new Map<string, { chain: number; seatings: Map<string, number[]> }>();
+  set.takes.forEach((take, t) => {
+    const chain = model.chains[t]!;
+    const key = chain.links.filter((link) => link < model.linksPerFrequency).join();
+    const group = groups.get(key) ?? { chain: t, seatings: new Map<string, number[]>() };
+    groups.set(key, group);
+    const seating = JSON.stringify([take.emitter, take.session, take.emitterSeating, take.receiverSeating]);
+    group.seatings.set(seating, [...(group.seatings.get(seating) ?? []), t]);
+  });
+  return [...groups.values()].map(({ chain, seatings }) => {
+    const { links, factors } = model.chains[chain]!;
+    const own = links.map((_, k) => k).filter((k) => links[k]! < model.linksPerFrequency);
+    const ends = own.map((k) => links[k]!).filter((link) => model.links[link]!.kind === 'response');
+    return {
+      links: own.map((k) => links[k]!),
+      factors: own.map((k) => factors[k]!),
+      ends: [ends[0]!, ends[1] ?? ends[0]!],
+      seatings: [...seatings.values()],
+    };
+  });
+}

@@ -1,0 +1,53 @@
+import type { Explanation } from './explanations.ts';
+import { dot, type WhitenedCurve, whiten } from './whitened-curve.ts';
+
+/** Widths tried, as the distance in octaves from the centre to where half of the height is left. Common practice, no source. */
+const HALF_WIDTHS = [1 / 24, 1 / 12, 1 / 8, 1 / 6, 1 / 4, 1 / 3, 1 / 2, 3 / 4];
+
+export interface Bump {
+  readonly explanation: Extract<Explanation, { kind: 'local' }>;
+  readonly misfit: number;
+  readonly curve: Float64Array;
+}
+
+/**
+ * The bell over log frequency (Gaussian) that fits a deviation best, over all centres and some widths.
+ * @param frequencies hertz. Undefined where no bell fits better than nothing.
+ */
+export function bestBump(curve: WhitenedCurve, frequencies: Float64Array): Bump | undefined {
+  const y = whiten(curve, curve.shift);
+  const total = dot(y, y);
+  const octaves = Float64Array.from(frequencies, Math.log2);
+  let best: { gain: number; centre: number; halfWidth: number; height: number; information: number } | undefined;
+  for (const halfWidth of HALF_WIDTHS) {
+    for (const f of curve.used) {
+      const shape = whiten(curve, bell(octaves, octaves[f]!, halfWidth));
+      const information = dot(shape, shape);
+      const projection = dot(shape, y);
+      const gain = (projection * projection) / information;
+      if (best === undefined || gain > best.gain) {
+        best = { gain, centre: octaves[f]!, halfWidth, height: projection / information, information };
+      }
+    }
+  }
+  if (best === undefined || !(best.gain > 0)) return undefined;
+  const { centre, halfWidth, height, information } = best;
+  const misfit = total - best.gain;
+  const excess = Math.max(1, misfit / Math.max(1, y.length - 3));
+  return {
+    explanation: {
+      kind: 'local',
+      from: 2 ** (centre - halfWidth),
+      to: 2 ** (centre + halfWidth),
+      centre: 2 ** centre,
+      height,
+      uncertainty: Math.sqrt(excess / information),
+    },
+    misfit,
+    curve: bell(octaves, centre, halfWidth).map((value) => height * value),
+  };
+}
+
+function bell(octaves: Float64Array, centre: number, halfWidth: number): Float64Array {
+  return octaves.map((at) => 2 ** -(((at - centre) / halfWidth) ** 2));
+}

@@ -1,0 +1,96 @@
+import { refitLevel } from '../estimate/scatter-of-level.ts';
+import { type Shift, shiftOfTake } from '../estimate/shift-of-take.ts';
+import type { Solution } from '../estimate/solution.ts';
+import { type SolveOptions, solve } from '../estimate/solve.ts';
+import type { Model } from '../model/model.ts';
+import { neighbourCorrelation } from '../numeric/effective-share.ts';
+import type { TakeSet } from '../takes/take-set.ts';
+import { explainTake } from './explain-take.ts';
+import type { ExplainedTake } from './explanations.ts';
+import { type Screening, type ScreeningLevels, screenTakes } from './screen-takes.ts';
+
+/** A solution that rests on the takes that agree, and what was found of the others. */
+export interface Settled {
+  readonly solution: Solution;
+  readonly screening: Screening;
+  /** Takes kept out of the solution. */
+  readonly leftOut: ReadonlySet<number>;
+  /** Flagged and tied takes with what they read like, worst first. */
+  readonly explained: readonly ExplainedTake[];
+}
+
+export interface SettleOptions extends SolveOptions {
+  /** Chance that a clean set gets any take flagged. */
+  readonly risk: number;
+}
+
+/**
+ * Solves, screens the takes, and solves again without those that are flagged; then says what each of them reads like.
+ * Tied takes stay in: the data do not tell which of them to leave out. Where the model fails as a whole, nothing is left
+ * out.
+ */
+export async function settle(set: TakeSet, model: Model, options: SettleOptions): Promise<Settled> {
+  const first = await solve(set, model, options);
+  const screening = screenTakes(set, model, first, options);
+  const leftOut = new Set(
+    screening.isModelFailing ? [] : screening.setAside.filter((t) => screening.takes[t]!.verdict === 'flagged'),
+  );
+  const solution = leftOut.size === 0 ? first : await solve(set, model, { ...options, without: leftOut });
+  const suspects = screening.takes
+    .map(({ verdict }, t) => ({ verdict, t }))
+    .filter(({ verdict }) => verdict === 'flagged' || verdict === 'tied')
+    .map(({ t }) => t)
+    .sort((a, b) => screening.takes[a]!.pValue - screening.takes[b]!.pValue || a - b);
+  const { levels, setAside } = screening;
+  const correlation = correlationAlong(levels, set);
+  const explained = suspects.map((t) => {
+    const rivals = new Set(screening.takes[t]!.tiedWith);
+    const out = new Set(setAside.filter((other) => other !== t && !rivals.has(other)));
+    return explainTake(set, model, solution, t, { ...deviationOf(levels, set, t, out), correlation });
+  });
+  return { solution, screening, leftOut, explained };
+}
+
+/** The take's deviation from all takes but those in `out`. */
+function deviationOf(levels: ScreeningLevels, set: TakeSet, take: number, out: ReadonlySet<number>) {
+  const shift = new Float64Array(set.frequencies.length).fill(Number.NaN);
+  const uncertainty = new Float64Array(shift.length).fill(Number.NaN);
+  const offered = (present: readonly boolean[]) => present.map((is, t) => is && !out.has(t));
+  const shiftIn = (scatter: ScreeningLevels['bands'][number]['scatter']) => {
+    const { groups, links } = levels;
+    const refitted = refitLevel(groups, links, scatter, offered(scatter.deviations.present));
+    for (const chain of refitted.chains) {
+      for (const seat of chain.seats) if (seat.takes.includes(take)) return shiftOfTake(refitted, chain, seat, take);
+    }
+    return undefined;
+  };
+  for (const { scatter, frequencies } of levels.bands) {
+    const own = shiftIn(scatter);
+    frequencies.forEach((f, c) => {
+      shift[f] = own?.shift[c] ?? Number.NaN;
+      uncertainty[f] = own?.uncertainty ?? Number.NaN;
+    });
+  }
+  const level = levels.templates.find(({ kind }) => kind === 'constant');
+  const constant: Shift | undefined = level && shiftIn(level.scatter);
+  return { shift, uncertainty, constant };
+}
+
+/** Correlation of neighbours along frequency of what standing takes show, each in units of its own uncertainty. */
+function correlationAlong(levels: ScreeningLevels, set: TakeSet): number {
+  const width = set.frequencies.length;
+  const standardised = new Float64Array(set.takes.length * width).fill(Number.NaN);
+  for (const { scatter, frequencies } of levels.bands) {
+    for (const chain of scatter.chains) {
+      for (const seat of chain.seats) {
+        for (const t of seat.takes) {
+          const { shift, uncertainty } = shiftOfTake(scatter, chain, seat, t);
+          frequencies.forEach((f, c) => {
+            standardised[t * width + f] = shift[c]! / uncertainty;
+          });
+        }
+      }
+    }
+  }
+  return neighbourCorrelation(standardised, set.takes.length, width);
+}

@@ -1,0 +1,181 @@
+import type { Deviations } from '../estimate/scatter-of-level.ts';
+import type { Solution } from '../estimate/solution.ts';
+import { neighbourCorrelation, shareForMean } from '../numeric/effective-share.ts';
+import { hertz } from '../quantity/frequency.ts';
+import { bandHolding, octaveBand } from '../quantity/octave-bands.ts';
+import type { TakeSet } from '../takes/take-set.ts';
+
+/** What a take is tested for: one figure a take, made from its residuals. */
+export interface Template {
+  readonly kind: 'constant' | 'slope' | 'band';
+  /** Hertz. */
+  readonly from: number;
+  readonly to: number;
+  readonly deviations: Deviations;
+}
+
+/** The residuals of one third-octave band, a column a frequency. */
+export interface BandColumns {
+  readonly from: number;
+  readonly to: number;
+  /** Indices of the frequencies. */
+  readonly frequencies: readonly number[];
+  readonly deviations: Deviations;
+}
+
+/** A take is left out of a band of which it misses more than this part. Common practice, no source. */
+const LARGEST_GAP = 0.5;
+
+/**
+ * Figures of all takes: a constant and a slope over all frequencies, and means over third-octaves that overlap by half.
+ * Frequencies weigh by how little the residuals scatter at them. Slopes are in dB per decade.
+ */
+export function takeTemplates(set: TakeSet, solution: Solution): Template[] {
+  const weights = frequencyWeights(set, solution);
+  const given = givenVariances(solution);
+  const all = [...set.frequencies.keys()];
+  const x = Float64Array.from(set.frequencies, Math.log10);
+  const ends = { from: set.frequencies[0]!, to: set.frequencies.at(-1)! };
+  const share = shareForMean(neighbourCorrelation(solution.residuals, set.takes.length, all.length));
+  const project = (members: readonly number[], centred: boolean) =>
+    projection(set, solution, { members, weights, x: centred ? x : undefined, given, share });
+  const templates: Template[] = [{ kind: 'constant', ...ends, deviations: project(all, false) }];
+  if (all.length >= FEWEST_FOR_SLOPE) templates.push({ kind: 'slope', ...ends, deviations: project(all, true) });
+  for (const band of overlappingBands(set)) {
+    // A band that holds all frequencies would only repeat the constant.
+    if (band.members.length === all.length) continue;
+    templates.push({ kind: 'band', from: band.from, to: band.to, deviations: project(band.members, false) });
+  }
+  return templates;
+}
+
+const FEWEST_FOR_SLOPE = 4;
+
+/** The residuals of each third-octave band. */
+export function bandColumns(set: TakeSet, solution: Solution): BandColumns[] {
+  const width = set.frequencies.length;
+  const given = givenVariances(solution);
+  const groups = new Map<number, number[]>();
+  set.frequencies.forEach((frequency, f) => {
+    const { index } = bandHolding(hertz(frequency), 3);
+    groups.set(index, [...(groups.get(index) ?? []), f]);
+  });
+  return [...groups].map(([index, frequencies]) => {
+    const columns = frequencies.length;
+    const values = new Float64Array(set.takes.length * columns);
+    const active = set.takes.map((_, t) => {
+      let complete = true;
+      frequencies.forEach((f, c) => {
+        const residual = solution.residuals[t * width + f]!;
+        values[t * columns + c] = residual;
+        if (Number.isNaN(residual)) complete = false;
+      });
+      return complete;
+    });
+    const { from, to } = octaveBand(index, 3);
+    const givenVariance = mean(frequencies.map((f) => given[f]!));
+    return {
+      from,
+      to,
+      frequencies,
+      deviations: { values, columns, present: active, active, givenVariance },
+    };
+  });
+}
+
+interface Projection {
+  readonly members: readonly number[];
+  readonly weights: Float64Array;
+  /** Abscissa for a slope; absent for a mean. */
+  readonly x: Float64Array | undefined;
+  readonly given: Float64Array;
+  readonly share: number;
+}
+
+function projection(set: TakeSet, solution: Solution, how: Projection): Deviations {
+  const width = set.frequencies.length;
+  const values = new Float64Array(set.takes.length);
+  let givenVariance = 0;
+  const active = set.takes.map((_, t) => {
+    const there = how.members.filter((f) => !Number.isNaN(solution.residuals[t * width + f]!));
+    if (there.length === 0 || there.length < (1 - LARGEST_GAP) * how.members.length) return false;
+    const weight = there.reduce((sum, f) => sum + how.weights[f]!, 0);
+    const centre = how.x && there.reduce((sum, f) => sum + how.weights[f]! * how.x![f]!, 0) / weight;
+    const basis = (f: number) => (centre === undefined ? 1 : how.x![f]! - centre);
+    let sum = 0;
+    let squares = 0;
+    let variance = 0;
+    for (const f of there) {
+      const b = how.weights[f]! * basis(f);
+      sum += b * solution.residuals[t * width + f]!;
+      squares += b * basis(f);
+      variance += b * b * how.given[f]!;
+    }
+    values[t] = sum / squares;
+    givenVariance = Math.max(givenVariance, variance / squares ** 2 / how.share);
+    return true;
+  });
+  return { values, columns: 1, present: active, active, givenVariance };
+}
+
+// 1 / (mean absolute residual)², the wildest takes cut off, so that one resonance does not drown the rest of the range.
+function frequencyWeights(set: TakeSet, { residuals }: Solution): Float64Array {
+  const width = set.frequencies.length;
+  const level = new Float64Array(width);
+  const meanBelow = (f: number, limit: number) => {
+    let sum = 0;
+    let count = 0;
+    for (let t = 0; t < set.takes.length; t++) {
+      const residual = Math.abs(residuals[t * width + f]!);
+      if (Number.isNaN(residual)) continue;
+      sum += Math.min(residual, limit);
+      count++;
+    }
+    return count === 0 ? 0 : sum / count;
+  };
+  for (let f = 0; f < width; f++) level[f] = meanBelow(f, 3 * meanBelow(f, Number.POSITIVE_INFINITY));
+  const floor = mean(Array.from(level)) * 0.1;
+  return level.map((value) => (floor > 0 ? 1 / Math.max(value, floor) ** 2 : 1));
+}
+
+/** Variance of one reading a frequency where the user gives it (`u_db` or one figure); 0 elsewhere. */
+function givenVariances({ readingUncertainty, residuals, patternOf }: Solution): Float64Array {
+  const width = patternOf.length;
+  const variances = new Float64Array(width);
+  if (readingUncertainty.source !== 'column' && readingUncertainty.source !== 'given') return variances;
+  const counts = new Float64Array(width);
+  for (let cell = 0; cell < residuals.length; cell++) {
+    if (Number.isNaN(residuals[cell]!)) continue;
+    const f = cell % width;
+    variances[f] = variances[f]! + readingUncertainty.values[cell]! ** 2;
+    counts[f] = counts[f]! + 1;
+  }
+  return variances.map((sum, f) => (counts[f]! > 0 ? sum / counts[f]! : 0));
+}
+
+function overlappingBands(set: TakeSet): { from: number; to: number; members: number[] }[] {
+  const half = new Map<number, number[]>();
+  // Sixth-octave halves, put together two by two: third-octaves and those shifted by half a band.
+  set.frequencies.forEach((frequency, f) => {
+    const { index } = bandHolding(hertz(frequency), 6);
+    half.set(index, [...(half.get(index) ?? []), f]);
+  });
+  const indices = [...half.keys()].sort((a, b) => a - b);
+  const first = indices[0];
+  const last = indices.at(-1);
+  const bands: { from: number; to: number; members: number[] }[] = [];
+  if (first === undefined || last === undefined) return bands;
+  let before = '';
+  for (let index = first - 1; index <= last; index++) {
+    const members = [...(half.get(index) ?? []), ...(half.get(index + 1) ?? [])];
+    // Sparse frequencies make neighbours alike: the same members are tested once.
+    if (members.length === 0 || members.join() === before) continue;
+    before = members.join();
+    bands.push({ from: octaveBand(index, 6).from, to: octaveBand(index + 1, 6).to, members });
+  }
+  return bands;
+}
+
+function mean(values: readonly number[]): number {
+  return values.reduce((sum, value) => sum + value, 0) / values.length;
+}
