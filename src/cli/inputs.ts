@@ -4,8 +4,7 @@ import { InputError } from '../quantity/input-fault.ts';
 import { readFiles } from '../readings/read-files.ts';
 import { readPathLevels } from '../readings/read-path-levels.ts';
 import { readReferences } from '../readings/read-references.ts';
-import type { Readings } from '../readings/readings.ts';
-import type { Source } from '../readings/source.ts';
+import type { InputFile, Readings } from '../readings/readings.ts';
 import type { InputSummary } from '../report/result.ts';
 import type { GatherOptions } from '../takes/gather-takes.ts';
 import type { TakeSet } from '../takes/take-set.ts';
@@ -42,18 +41,20 @@ export function namedFiles(settings: Settings): string[] {
 /** Reads the measurement files. */
 export async function readMeasurements(settings: Settings, progress: Progress): Promise<Readings> {
   const onProgress = progress.step('reading');
-  const sources = await openAll(settings.files);
+  const sources = await allOrFaults(settings.files.map((file) => fileSource(file)));
   return readFiles(sources, settings.level === null ? { onProgress } : { onProgress, levelFormula: settings.level });
 }
 
-// All files that cannot be opened are told at once.
-async function openAll(files: readonly string[]): Promise<Source[]> {
-  const opened = await Promise.allSettled(files.map((file) => fileSource(file)));
-  const failures = opened.filter((outcome) => outcome.status === 'rejected').map(({ reason }): unknown => reason);
+// The faults of all files are told at once.
+async function allOrFaults<Work extends readonly unknown[]>(
+  work: Work,
+): Promise<{ -readonly [Item in keyof Work]: Awaited<Work[Item]> }> {
+  const outcomes = await Promise.allSettled(work);
+  const failures = outcomes.filter((outcome) => outcome.status === 'rejected').map(({ reason }): unknown => reason);
   const defect = failures.find((reason) => !(reason instanceof InputError));
   if (defect !== undefined) throw defect;
   if (failures.length > 0) throw new InputError(failures.flatMap((reason) => (reason as InputError).faults));
-  return opened.flatMap((outcome) => (outcome.status === 'fulfilled' ? [outcome.value] : []));
+  return Promise.all(work) as Promise<{ -readonly [Item in keyof Work]: Awaited<Work[Item]> }>;
 }
 
 export function gatherOptions(settings: Settings): GatherOptions {
@@ -62,18 +63,36 @@ export function gatherOptions(settings: Settings): GatherOptions {
   return { grid, band: settings.band === null ? undefined : parseRange(settings.band) };
 }
 
-/** What the user decides about the model, with certificates and path levels read from their files. */
-export async function modelOptions(settings: Settings): Promise<ModelOptions> {
+/** What the user decides about the model, with what was read for it. */
+export interface ModelInputs {
+  readonly options: ModelOptions;
+  /** Tables of certificates and path levels. */
+  readonly files: readonly InputFile[];
+  readonly notices: readonly string[];
+}
+
+/** Reads certificates and path levels from their files; faults of both are told together. */
+export async function readModelInputs(settings: Settings): Promise<ModelInputs> {
   const { model, datum, reversible, lookalikes, refs, path } = settings;
+  const word = pathWord(path);
+  const [certificates, levels] = await allOrFaults([
+    refs === null ? undefined : fileSource(refs).then(readReferences),
+    word === undefined ? fileSource(path).then(readPathLevels) : undefined,
+  ]);
+  const tables = [certificates, levels].filter((table) => table !== undefined);
   return {
-    ...DEFAULT_MODEL_OPTIONS,
-    model,
-    datum,
-    reversible,
-    lookalikes,
-    looseGain: settings['loose-gain'],
-    references: refs === null ? [] : await readReferences(await fileSource(refs)),
-    path: pathWord(path) ?? (await readPathLevels(await fileSource(path))),
+    options: {
+      ...DEFAULT_MODEL_OPTIONS,
+      model,
+      datum,
+      reversible,
+      lookalikes,
+      looseGain: settings['loose-gain'],
+      references: certificates?.references ?? [],
+      path: word ?? levels?.levels ?? [],
+    },
+    files: tables.map(({ file }) => file),
+    notices: tables.flatMap(({ notices }) => notices),
   };
 }
 
@@ -82,18 +101,18 @@ function pathWord(path: string): 'free' | 'none' | undefined {
 }
 
 /** What reading and gathering gave, for the outputs. */
-export function inputSummary(readings: Readings, set: TakeSet): InputSummary {
+export function inputSummary(readings: Readings, set: TakeSet, modelInputs: ModelInputs): InputSummary {
   return {
-    files: readings.files,
+    files: [...readings.files, ...modelInputs.files],
     readings: readings.count,
     unused: [...readings.unused, ...set.unused],
-    notices: [...readings.notices, ...set.notices],
+    notices: [...readings.notices, ...modelInputs.notices, ...set.notices],
   };
 }
 
 /** One sentence for each input file that is no longer what it was in the run that is repeated. */
-export function changedFiles(readings: Readings, earlier: EarlierRun | undefined): string[] {
-  return readings.files
+export function changedFiles({ files }: Pick<InputSummary, 'files'>, earlier: EarlierRun | undefined): string[] {
+  return files
     .filter(({ name, sha256 }) => (earlier?.sha256.get(name) ?? sha256) !== sha256)
     .map(({ name }) => `${name} is not what it was in the run that is repeated: its SHA-256 differs.`);
 }

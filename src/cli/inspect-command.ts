@@ -7,7 +7,7 @@ import { jsonText } from '../report/json-text.ts';
 import type { Inspection } from '../report/result.ts';
 import { gatherTakes } from '../takes/gather-takes.ts';
 import { EXIT } from './exit-codes.ts';
-import { changedFiles, gatherOptions, inputSummary, modelOptions, readMeasurements, settingsOf } from './inputs.ts';
+import { changedFiles, gatherOptions, inputSummary, readMeasurements, readModelInputs, settingsOf } from './inputs.ts';
 import { nothingApart } from './nothing-apart.ts';
 import type { Request } from './options.ts';
 import { installedPackage } from './package-root.ts';
@@ -26,18 +26,19 @@ export async function inspectCommand(request: Request): Promise<number> {
   try {
     const readings = await readMeasurements(settings, progress);
     const set = gatherTakes(readings, gatherOptions(settings));
-    const model = buildModel(set, await modelOptions(settings));
+    const modelInputs = await readModelInputs(settings);
+    const model = buildModel(set, modelInputs.options);
     const patterns = findPatterns(set, model);
     const inspection: Inspection = {
       version: installedPackage().version,
-      input: inputSummary(readings, set),
+      input: inputSummary(readings, set, modelInputs),
       set,
       model,
       patterns,
       open: openFindings(set, model, patterns),
     };
     progress.clear();
-    for (const sentence of changedFiles(readings, earlier)) writeMessage(sentence);
+    for (const sentence of changedFiles(inspection.input, earlier)) writeMessage(sentence);
     await writeResult(
       request.json ? jsonText(inspectRecord(inspection)) : ended(inspectText(inspection, textStyle(process.stdout))),
     );

@@ -1,6 +1,6 @@
 import type { OpenFinding } from '../findings/examination.ts';
+import { openSentence } from '../report/open-wording.ts';
 import { wrapped } from '../report/text-layout.ts';
-import { openSentence } from '../report/wording.ts';
 
 /** Findings told in the message; the rest are in the outputs. */
 const MOST_FINDINGS = 5;

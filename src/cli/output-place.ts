@@ -13,6 +13,7 @@ const RESULT_FILES: ReadonlySet<string> = new Set([
   'takes.csv',
   'pairs.csv',
   'residuals.csv',
+  'holds.csv',
   'unused.csv',
   'summary.json',
   'covariance.json',

@@ -1,5 +1,6 @@
 import { DEFAULT_RISK, DEFAULT_TOLERANCE } from '../findings/thresholds.ts';
 import { parseRange } from '../quantity/frequency.ts';
+import { UNCERTAINTY_RANGE, uncertaintyTrouble } from '../readings/physical-limits.ts';
 import { parseGrid } from './grid-text.ts';
 
 /**
@@ -77,9 +78,9 @@ const RULES: { readonly [Name in keyof Settings]: Rule<Settings[Name]> } = {
     read: orNull(name),
   },
   u: {
-    expected: 'a standard uncertainty in dB, above 0',
+    expected: `a standard uncertainty from ${UNCERTAINTY_RANGE.least} to ${UNCERTAINTY_RANGE.most} dB`,
     example: '0.3',
-    read: orNull((value) => number(value, (u) => u > 0)),
+    read: orNull((value) => number(value, (u) => uncertaintyTrouble(u) === '')),
   },
   band: {
     expected: 'two frequencies with their units, the lower first',

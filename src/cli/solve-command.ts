@@ -12,9 +12,9 @@ import {
   changedFiles,
   gatherOptions,
   inputSummary,
-  modelOptions,
   namedFiles,
   readMeasurements,
+  readModelInputs,
   settingsOf,
 } from './inputs.ts';
 import { nothingApart } from './nothing-apart.ts';
@@ -36,7 +36,8 @@ export async function solveCommand(request: Request, folderName: string): Promis
   try {
     const readings = await readMeasurements(settings, progress);
     const set = gatherTakes(readings, gatherOptions(settings));
-    const model = buildModel(set, await modelOptions(settings));
+    const modelInputs = await readModelInputs(settings);
+    const model = buildModel(set, modelInputs.options);
     const onProgress = progress.step('solving');
     const settled = await settle(set, model, {
       givenUncertainty: settings.u ?? undefined,
@@ -48,7 +49,9 @@ export async function solveCommand(request: Request, folderName: string): Promis
       version: installedPackage().version,
       settings: { ...settings },
       coverage: settings.coverage,
-      input: inputSummary(readings, set),
+      risk: settings.risk,
+      tolerance: settings.tolerance,
+      input: inputSummary(readings, set, modelInputs),
       set,
       model,
       solution: settled.solution,
@@ -56,7 +59,7 @@ export async function solveCommand(request: Request, folderName: string): Promis
     };
     await folder.write(outputFiles(result), (name) => progress.step(`writing ${name}`));
     progress.clear();
-    for (const sentence of changedFiles(readings, earlier)) writeMessage(sentence);
+    for (const sentence of changedFiles(result.input, earlier)) writeMessage(sentence);
     await writeResult(answer(result, request, folderName));
     return ending(result, request.strict);
   } finally {

@@ -12,7 +12,7 @@ export type Stratum = 'within' | 'inner' | 'outer';
 const STRATA: readonly Stratum[] = ['within', 'inner', 'outer'];
 
 /** One stratum pooled over the frequencies of a band. */
-export interface PooledStratum {
+interface PooledStratum {
   /** dB². */
   readonly sumOfSquares: number;
   /** Summed over the frequencies, as if they were independent. */

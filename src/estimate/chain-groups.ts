@@ -38,3 +38,32 @@ export function chainGroups(set: TakeSet, model: Model): ChainGroup[] {
     };
   });
 }
+
+/** Chains and their seatings as flat arrays: chain c owns the seatings `seatStart[c]` to `seatStart[c + 1]`. */
+export interface ChainLayout {
+  readonly groups: readonly ChainGroup[];
+  readonly seatStart: Int32Array;
+  /** Takes of each seating. */
+  readonly takes: readonly (readonly number[])[];
+  readonly chainOfSeat: Int32Array;
+  /** Seating of each take. */
+  readonly seatOf: Int32Array;
+}
+
+export function chainLayout(set: TakeSet, model: Model): ChainLayout {
+  const groups = chainGroups(set, model);
+  const seatStart = new Int32Array(groups.length + 1);
+  groups.forEach(({ seatings }, c) => {
+    seatStart[c + 1] = seatStart[c]! + seatings.length;
+  });
+  const takes = groups.flatMap(({ seatings }) => seatings);
+  const chainOfSeat = new Int32Array(takes.length);
+  groups.forEach((_, c) => {
+    chainOfSeat.fill(c, seatStart[c], seatStart[c + 1]);
+  });
+  const seatOf = new Int32Array(set.takes.length);
+  takes.forEach((members, seat) => {
+    for (const t of members) seatOf[t] = seat;
+  });
+  return { groups, seatStart, takes, chainOfSeat, seatOf };
+}

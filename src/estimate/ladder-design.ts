@@ -11,9 +11,10 @@ export interface Seatings {
 /**
  * Sorts the takes into pairs and seatings.
  *
- * A pair is two units and the links of their chain; in the reciprocal model the two directions are one pair. Takes of a
- * pair that agree in both seatings (and path and mounts) are one seating; a unit without a seating label counts as
- * mounted once in each session. In the reciprocal model the two directions of a seating are repeats of each other.
+ * A pair is two units and the links of their chain; the two directions are one pair where their chains have the same
+ * links, as in the reciprocal model. Takes of a pair that agree in both seatings (and path and mounts) are one seating; a
+ * unit without a seating label counts as mounted once in each session. The two directions of a seating of one pair are
+ * repeats of each other.
  */
 export function seatingsOf(set: TakeSet, model: Model): Seatings {
   const pairs = new Map<string, number>();
@@ -67,7 +68,8 @@ function keysOf(take: Take, index: number, model: Model): { readonly pair: strin
       seating: [take.receiverMount, take.receiverSeating, unlabelled(take.receiverSeating, take)],
     },
   ].map((end) => ({ ...end, text: JSON.stringify([end.unit, end.seating]) }));
-  if (model.choice.kind === 'reciprocal') ends.sort((a, b) => (a.text < b.text ? -1 : a.text > b.text ? 1 : 0));
+  // The links tell the two directions apart where the model does.
+  ends.sort((a, b) => (a.text < b.text ? -1 : a.text > b.text ? 1 : 0));
   const { links, factors } = model.chains[index]!;
   const chain = links
     .map((link, k) => [link, factors[k]!] as const)

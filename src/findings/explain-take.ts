@@ -1,4 +1,3 @@
-import type { Shift } from '../estimate/shift-of-take.ts';
 import type { Solution } from '../estimate/solution.ts';
 import type { Model } from '../model/model.ts';
 import type { TakeSet } from '../takes/take-set.ts';
@@ -8,6 +7,13 @@ import { otherChains } from './other-chains.ts';
 import { EQUALLY_GOOD_RATIO } from './thresholds.ts';
 import { fitShape, type WhitenedCurve } from './whitened-curve.ts';
 
+/** A shift that is the same at all frequencies, in dB, with its standard uncertainty and degrees of freedom. */
+export interface ConstantShift {
+  readonly shift: number;
+  readonly uncertainty: number;
+  readonly dof: number;
+}
+
 /** What is known of the take's deviation from all that stands. */
 export interface Deviation {
   /** Entry a frequency, in dB; NaN where not known. */
@@ -16,7 +22,7 @@ export interface Deviation {
   /** Correlation of neighbours along frequency of what is left in takes that agree. */
   readonly correlation: number;
   /** The constant shift of the screening, which weighs frequencies as it should. */
-  readonly constant: Shift | undefined;
+  readonly constant: ConstantShift | undefined;
 }
 
 /**
@@ -93,7 +99,7 @@ function criterionOf(misfit: number, count: number, parameters: number): number 
 }
 
 function movedGain(
-  screened: Shift | undefined,
+  screened: ConstantShift | undefined,
   fit: { coefficients: readonly number[]; uncertainties: readonly number[] },
 ): Explanation {
   return screened === undefined
@@ -103,7 +109,7 @@ function movedGain(
         uncertainty: fit.uncertainties[0]!,
         dof: Number.POSITIVE_INFINITY,
       }
-    : { kind: 'moved gain', shift: screened.shift[0]!, uncertainty: screened.uncertainty, dof: screened.dof };
+    : { kind: 'moved gain', shift: screened.shift, uncertainty: screened.uncertainty, dof: screened.dof };
 }
 
 /** Explanations that hold another one as a special case: such a one is no rival of it. */
@@ -114,10 +120,17 @@ const SPECIAL_CASES: Partial<Record<Explanation['kind'], readonly Explanation['k
 };
 
 function rank(candidates: readonly Candidate[]): RankedExplanation[] {
-  const sorted = [...candidates].sort((a, b) => a.criterion - b.criterion);
-  const best = sorted[0]!;
   const within = 2 * Math.log(EQUALLY_GOOD_RATIO);
-  return sorted.map(({ explanation, criterion, curve }) => ({
+  const sorted = [...candidates].sort((a, b) => a.criterion - b.criterion);
+  // A special case that does nearly as well as the best says more with less: it comes first.
+  const simpler = sorted.find(
+    ({ explanation, criterion }) =>
+      SPECIAL_CASES[sorted[0]!.explanation.kind]?.includes(explanation.kind) &&
+      criterion - sorted[0]!.criterion < within,
+  );
+  const best = simpler ?? sorted[0]!;
+  const ordered = [best, ...sorted.filter((candidate) => candidate !== best)];
+  return ordered.map(({ explanation, criterion, curve }) => ({
     explanation,
     behind: criterion - best.criterion,
     isEquallyGood:

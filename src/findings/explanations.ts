@@ -28,7 +28,7 @@ export interface ExplainedTake {
 
 export interface RankedExplanation {
   readonly explanation: Explanation;
-  /** Bayesian information criterion less that of the best explanation: 0 for the best. */
+  /** Bayesian information criterion less that of the first explanation; below 0 for one that only adds to the first. */
   readonly behind: number;
   /** Whether the data do not tell it from the best one. */
   readonly isEquallyGood: boolean;

@@ -1,8 +1,7 @@
-import type { LevelScatter } from '../estimate/scatter-of-level.ts';
-import { UNCHECKED } from '../estimate/scatter-of-level.ts';
+import type { ChainLayout } from '../estimate/chain-groups.ts';
+import { type LevelScatter, partnerContrasts } from '../estimate/scatter-of-level.ts';
 import type { Model } from '../model/model.ts';
 import { chiSquareUpperQuantile } from '../numeric/chi-square.ts';
-import { neighbourCorrelation, shareForVariance } from '../numeric/effective-share.ts';
 import { fUpper } from '../numeric/f-distribution.ts';
 import { holmAdjusted } from '../numeric/multiple-testing.ts';
 import { robustVarianceShares, type SquaredContrast } from '../numeric/variance-shares.ts';
@@ -46,7 +45,7 @@ const FEWEST_DOF = 2;
 export function holdFindings(model: Model, levels: ScreeningLevels, options: HoldOptions): HoldFinding[] {
   const units = unitsOf(model);
   const raw = levels.bands.flatMap(({ from, to, scatter }) => {
-    const band = bandContrasts(scatter);
+    const band = bandContrasts(levels.layout, scatter);
     return units.map((unit) => ({ unit, from, to, ...shareOf(unit.links, band, levels.links, options) }));
   });
   const adjusted = holmAdjusted(raw.map(({ pValue }) => pValue));
@@ -103,24 +102,13 @@ interface BandContrasts {
   readonly isTestable: boolean;
 }
 
-function bandContrasts({ chains, deviations, repeatDof, seating }: LevelScatter): BandContrasts {
-  const { columns } = deviations;
-  const residuals = new Float64Array(chains.length * columns);
-  chains.forEach((chain, row) => {
-    residuals.set(chain.residual, row * columns);
-  });
-  const independent = 1 + (columns - 1) * shareForVariance(neighbourCorrelation(residuals, chains.length, columns));
-  const contrasts: SquaredContrast[] = [];
-  for (const chain of chains) {
-    const left = 1 - chain.weight * chain.leverageFactor;
-    if (left < UNCHECKED) continue;
-    const [a, b] = chain.group.ends;
-    const square = chain.residual.reduce((sum, value) => sum + value * value, 0) / columns / left;
-    contrasts.push({ a, b, square, dof: left * independent, known: 1 / chain.precision });
-  }
+function bandContrasts(layout: ChainLayout, { fitted, repeatDof, seating }: LevelScatter): BandContrasts {
   const seatDof = seating === undefined ? Number.POSITIVE_INFINITY : seating.dof.reduce((sum, dof) => sum + dof, 0);
-  const knownDof = seating === undefined ? repeatDof : seatDof;
-  return { contrasts, knownDof, isTestable: repeatDof > 0 || seating !== undefined };
+  return {
+    contrasts: partnerContrasts(layout, fitted),
+    knownDof: seating === undefined ? repeatDof : seatDof,
+    isTestable: repeatDof > 0 || seating !== undefined,
+  };
 }
 
 function shareOf(

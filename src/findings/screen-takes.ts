@@ -1,6 +1,6 @@
-import { type ChainGroup, chainGroups } from '../estimate/chain-groups.ts';
+import { type ChainLayout, chainLayout } from '../estimate/chain-groups.ts';
 import { type LevelScatter, refitLevel, scatterOfLevel } from '../estimate/scatter-of-level.ts';
-import { type Shift, shiftOfTake } from '../estimate/shift-of-take.ts';
+import { shiftsOfTakes } from '../estimate/shifts-of-takes.ts';
 import type { Solution } from '../estimate/solution.ts';
 import type { Model } from '../model/model.ts';
 import { neighbourCorrelation, shareForVariance } from '../numeric/effective-share.ts';
@@ -9,6 +9,8 @@ import { holmAdjusted } from '../numeric/multiple-testing.ts';
 import { normalUpperQuantile } from '../numeric/normal.ts';
 import { studentTwoSided } from '../numeric/student-t.ts';
 import type { TakeSet } from '../takes/take-set.ts';
+import type { ConstantShift } from './explain-take.ts';
+import { spreadOfSquares } from './spread-of-squares.ts';
 import { bandColumns, takeTemplates } from './take-templates.ts';
 import { EQUALLY_GOOD_RATIO, LARGEST_FLAGGED_PART } from './thresholds.ts';
 
@@ -42,7 +44,7 @@ export interface Screening {
 
 /** The levels at which takes are compared, with the takes that stand. */
 export interface ScreeningLevels {
-  readonly groups: readonly ChainGroup[];
+  readonly layout: ChainLayout;
   readonly links: number;
   /** A template each: constant, slope, bands. */
   readonly templates: readonly {
@@ -121,22 +123,22 @@ export function screenTakes(set: TakeSet, model: Model, solution: Solution, { ri
 }
 
 function startingLevels(set: TakeSet, model: Model, solution: Solution): ScreeningLevels {
-  const groups = chainGroups(set, model);
+  const layout = chainLayout(set, model);
   const links = model.linksPerFrequency;
   return {
-    groups,
+    layout,
     links,
     templates: takeTemplates(set, solution).map(({ kind, from, to, deviations }) => ({
       kind,
       from,
       to,
-      scatter: scatterOfLevel(groups, links, deviations),
+      scatter: scatterOfLevel(layout, links, deviations),
     })),
     bands: bandColumns(set, solution).map(({ from, to, frequencies, deviations }) => ({
       from,
       to,
       frequencies,
-      scatter: scatterOfLevel(groups, links, deviations),
+      scatter: scatterOfLevel(layout, links, deviations),
     })),
   };
 }
@@ -145,7 +147,7 @@ function refit(levels: ScreeningLevels, active: readonly boolean[]): ScreeningLe
   const one = <L extends { readonly scatter: LevelScatter }>(level: L): L => {
     const present = hasReading(level.scatter);
     const both = active.map((is, t) => is && present(t));
-    return { ...level, scatter: refitLevel(levels.groups, levels.links, level.scatter, both) };
+    return { ...level, scatter: refitLevel(levels.layout, levels.links, level.scatter, both) };
   };
   return { ...levels, templates: levels.templates.map(one), bands: levels.bands.map(one) };
 }
@@ -154,7 +156,7 @@ function estimateAgain(levels: ScreeningLevels, active: readonly boolean[]): Scr
   const one = <L extends { readonly scatter: LevelScatter }>(level: L): L => {
     const present = hasReading(level.scatter);
     const deviations = { ...level.scatter.deviations, active: active.map((is, t) => is && present(t)) };
-    return { ...level, scatter: scatterOfLevel(levels.groups, levels.links, deviations) };
+    return { ...level, scatter: scatterOfLevel(levels.layout, levels.links, deviations) };
   };
   return { ...levels, templates: levels.templates.map(one), bands: levels.bands.map(one) };
 }
@@ -177,7 +179,6 @@ type Note = (take: number, p: number, test: TestKind, misfit: number) => void;
 
 /** Tests of all takes, or of some. */
 function testTakes(levels: ScreeningLevels, count: number, only?: readonly number[]): TakeTests[] {
-  const wanted = only === undefined ? undefined : new Set(only);
   const nothing: TakeTests = { p: Number.NaN, test: 'constant', misfit: 0 };
   const tests = new Array<TakeTests>(count).fill(nothing);
   const number = levels.templates.length + 1;
@@ -192,35 +193,35 @@ function testTakes(levels: ScreeningLevels, count: number, only?: readonly numbe
   };
   for (const { kind, scatter } of levels.templates) {
     if (!scatter.isKnown) continue;
-    forEachTake(scatter, wanted, (t, { shift, uncertainty, dof }) => {
-      const w = Math.abs(shift[0]! / uncertainty);
-      note(t, w < surelyTame ? 1 : studentTwoSided(w, dof), kind, w * w);
-    });
+    const { shift, uncertainty, dof } = shiftsOfTakes(levels.layout, scatter, only);
+    for (let t = 0; t < count; t++) {
+      const w = Math.abs(shift[t]! / uncertainty[t]!);
+      if (!Number.isNaN(w)) note(t, w < surelyTame ? 1 : studentTwoSided(w, dof[t]!), kind, w * w);
+    }
   }
-  anyDeviation(levels, count, wanted, note);
+  anyDeviation(levels, count, only, note);
   return tests;
 }
 
 /** Mean square over all frequencies, with as many of them counted independent as the correlation of neighbours leaves. */
-function anyDeviation(
-  levels: ScreeningLevels,
-  count: number,
-  wanted: ReadonlySet<number> | undefined,
-  note: Note,
-): void {
+function anyDeviation(levels: ScreeningLevels, count: number, only: readonly number[] | undefined, note: Note): void {
   const width = levels.bands.reduce((sum, band) => sum + band.frequencies.length, 0);
   const standardised = new Float64Array(count * width).fill(Number.NaN);
   const spent = new Float64Array(count);
   for (const { scatter, frequencies } of levels.bands) {
     if (!scatter.isKnown) continue;
-    forEachTake(scatter, undefined, (t, { shift, uncertainty, dof }) => {
-      for (let c = 0; c < frequencies.length; c++) standardised[t * width + frequencies[c]!] = shift[c]! / uncertainty;
-      spent[t] = spent[t]! + frequencies.length / dof;
-    });
+    const columns = frequencies.length;
+    const { shift, uncertainty, dof } = shiftsOfTakes(levels.layout, scatter);
+    for (let t = 0; t < count; t++) {
+      if (Number.isNaN(uncertainty[t]!)) continue;
+      for (let c = 0; c < columns; c++) {
+        standardised[t * width + frequencies[c]!] = shift[t * columns + c]! / uncertainty[t]!;
+      }
+      spent[t] = spent[t]! + columns / dof[t]!;
+    }
   }
-  const share = shareForVariance(neighbourCorrelation(standardised, count, width));
-  for (let t = 0; t < count; t++) {
-    if (wanted !== undefined && !wanted.has(t)) continue;
+  const share = shareForVariance(neighbourCorrelation(standardised, count, width), width);
+  const found = Array.from({ length: count }, (_, t) => {
     let known = 0;
     let squares = 0;
     for (let f = t * width; f < (t + 1) * width; f++) {
@@ -229,28 +230,20 @@ function anyDeviation(
       known++;
       squares += value * value;
     }
+    return { known, square: squares / known };
+  });
+  const spread = spreadOfSquares(
+    found.filter(({ known }) => known > 0).map(({ square }) => square),
+    Math.max(1, width * share),
+  );
+  for (const t of only ?? found.keys()) {
+    const { known, square } = found[t]!;
     if (known === 0) continue;
-    const independent = 1 + (known - 1) * share;
+    const independent = Math.max(1, spread.dof * (known / width));
     // Each band's scatter was estimated apart; the mean of their degrees of freedom stands for all.
     const dof = spent[t]! > 0 ? known / spent[t]! : Number.POSITIVE_INFINITY;
-    const ratio = squares / known;
+    const ratio = square / spread.excess;
     note(t, ratio < 1 ? 1 : fUpper(ratio, independent, dof), 'any', ratio * independent);
-  }
-}
-
-function forEachTake(
-  scatter: LevelScatter,
-  wanted: ReadonlySet<number> | undefined,
-  visit: (take: number, shift: Shift) => void,
-): void {
-  for (const chain of scatter.chains) {
-    for (const seat of chain.seats) {
-      for (const t of seat.takes) {
-        if (wanted !== undefined && !wanted.has(t)) continue;
-        const shift = shiftOfTake(scatter, chain, seat, t);
-        if (!Number.isNaN(shift.uncertainty)) visit(t, shift);
-      }
-    }
   }
 }
 
@@ -285,24 +278,28 @@ function verdicts(
 ): Screening {
   const standing = testTakes(levels, count);
   const shifts = constantShifts(levels, count);
-  for (const t of setAside) {
+  const tiedWith = new Map<number, number[]>();
+  for (const worst of setAside) {
+    // A take set aside is judged against those that stand; a tied one and its rivals, all of them being there.
+    const together = [worst, ...(ties.get(worst) ?? [])];
     const offered = refit(
       levels,
-      active.map((is, other) => is || other === t),
+      active.map((is, other) => is || other === worst),
     );
-    standing[t] = testTakes(offered, count, [t])[t]!;
-    shifts[t] = constantShifts(offered, count)[t];
+    const tests = testTakes(offered, count, together);
+    const constants = constantShifts(offered, count, together);
+    for (const t of together) {
+      standing[t] = tests[t]!;
+      shifts[t] = constants[t]!;
+      const others = together.filter((other) => other !== t);
+      if (others.length > 0) tiedWith.set(t, [...(tiedWith.get(t) ?? []), ...others]);
+    }
   }
   const adjusted = holmAdjusted(standing.map(({ p }) => p));
   const flagged = new Set(setAside);
-  const tiedWith = new Map<number, number[]>();
-  for (const [worst, others] of ties) {
-    const all = [worst, ...others];
-    for (const t of all) tiedWith.set(t, [...(tiedWith.get(t) ?? []), ...all.filter((other) => other !== t)]);
-  }
   const isKnown = levels.templates.some(({ scatter }) => scatter.isKnown);
   const takes = Array.from({ length: count }, (_, t): TakeScreening => {
-    const shift = shifts[t];
+    const shift = shifts[t]!;
     const verdict = tiedWith.has(t)
       ? 'tied'
       : flagged.has(t) || adjusted[t]! <= risk
@@ -316,21 +313,19 @@ function verdicts(
       pValue: adjusted[t]!,
       verdict,
       test: standing[t]!.test,
-      shift: shift?.shift[0] ?? Number.NaN,
-      shiftUncertainty: shift?.uncertainty ?? Number.NaN,
-      shiftDof: shift?.dof ?? Number.NaN,
+      shift: shift.shift,
+      shiftUncertainty: shift.uncertainty,
+      shiftDof: shift.dof,
       tiedWith: tiedWith.get(t) ?? [],
     };
   });
   return { takes, setAside, isModelFailing, levels };
 }
 
-function constantShifts(levels: ScreeningLevels, count: number): (Shift | undefined)[] {
-  const shifts = new Array<Shift | undefined>(count).fill(undefined);
+function constantShifts(levels: ScreeningLevels, count: number, only?: readonly number[]): ConstantShift[] {
   const constant = levels.templates.find(({ kind }) => kind === 'constant');
-  if (constant === undefined || !constant.scatter.isKnown) return shifts;
-  forEachTake(constant.scatter, undefined, (t, shift) => {
-    shifts[t] = shift;
-  });
-  return shifts;
+  const nothing = { shift: Number.NaN, uncertainty: Number.NaN, dof: Number.NaN };
+  if (constant === undefined || !constant.scatter.isKnown) return new Array<ConstantShift>(count).fill(nothing);
+  const { shift, uncertainty, dof } = shiftsOfTakes(levels.layout, constant.scatter, only);
+  return Array.from({ length: count }, (_, t) => ({ shift: shift[t]!, uncertainty: uncertainty[t]!, dof: dof[t]! }));
 }

@@ -1,5 +1,5 @@
-import { refitLevel } from '../estimate/scatter-of-level.ts';
-import { type Shift, shiftOfTake } from '../estimate/shift-of-take.ts';
+import { type LevelScatter, refitLevel } from '../estimate/scatter-of-level.ts';
+import { shiftsOfTakes } from '../estimate/shifts-of-takes.ts';
 import type { Solution } from '../estimate/solution.ts';
 import { type SolveOptions, solve } from '../estimate/solve.ts';
 import type { Model } from '../model/model.ts';
@@ -42,7 +42,7 @@ export async function settle(set: TakeSet, model: Model, options: SettleOptions)
     .map(({ t }) => t)
     .sort((a, b) => screening.takes[a]!.pValue - screening.takes[b]!.pValue || a - b);
   const { levels, setAside } = screening;
-  const correlation = correlationAlong(levels, set);
+  const correlation = suspects.length === 0 ? 0 : correlationAlong(levels, set);
   const explained = suspects.map((t) => {
     const rivals = new Set(screening.takes[t]!.tiedWith);
     const out = new Set(setAside.filter((other) => other !== t && !rivals.has(other)));
@@ -55,41 +55,34 @@ export async function settle(set: TakeSet, model: Model, options: SettleOptions)
 function deviationOf(levels: ScreeningLevels, set: TakeSet, take: number, out: ReadonlySet<number>) {
   const shift = new Float64Array(set.frequencies.length).fill(Number.NaN);
   const uncertainty = new Float64Array(shift.length).fill(Number.NaN);
-  const offered = (present: readonly boolean[]) => present.map((is, t) => is && !out.has(t));
-  const shiftIn = (scatter: ScreeningLevels['bands'][number]['scatter']) => {
-    const { groups, links } = levels;
-    const refitted = refitLevel(groups, links, scatter, offered(scatter.deviations.present));
-    for (const chain of refitted.chains) {
-      for (const seat of chain.seats) if (seat.takes.includes(take)) return shiftOfTake(refitted, chain, seat, take);
-    }
-    return undefined;
+  const { layout, links } = levels;
+  const shiftIn = (scatter: LevelScatter) => {
+    const offered = scatter.deviations.present.map((is, t) => is && !out.has(t));
+    return shiftsOfTakes(layout, refitLevel(layout, links, scatter, offered), [take]);
   };
   for (const { scatter, frequencies } of levels.bands) {
     const own = shiftIn(scatter);
     frequencies.forEach((f, c) => {
-      shift[f] = own?.shift[c] ?? Number.NaN;
-      uncertainty[f] = own?.uncertainty ?? Number.NaN;
+      shift[f] = own.shift[take * frequencies.length + c]!;
+      uncertainty[f] = own.uncertainty[take]!;
     });
   }
   const level = levels.templates.find(({ kind }) => kind === 'constant');
-  const constant: Shift | undefined = level && shiftIn(level.scatter);
+  const found = level && shiftIn(level.scatter);
+  const constant = found && { shift: found.shift[take]!, uncertainty: found.uncertainty[take]!, dof: found.dof[take]! };
   return { shift, uncertainty, constant };
 }
 
 /** Correlation of neighbours along frequency of what standing takes show, each in units of its own uncertainty. */
-function correlationAlong(levels: ScreeningLevels, set: TakeSet): number {
+function correlationAlong({ bands, layout }: ScreeningLevels, set: TakeSet): number {
   const width = set.frequencies.length;
   const standardised = new Float64Array(set.takes.length * width).fill(Number.NaN);
-  for (const { scatter, frequencies } of levels.bands) {
-    for (const chain of scatter.chains) {
-      for (const seat of chain.seats) {
-        for (const t of seat.takes) {
-          const { shift, uncertainty } = shiftOfTake(scatter, chain, seat, t);
-          frequencies.forEach((f, c) => {
-            standardised[t * width + f] = shift[c]! / uncertainty;
-          });
-        }
-      }
+  for (const { scatter, frequencies } of bands) {
+    const { shift, uncertainty } = shiftsOfTakes(layout, scatter);
+    for (let t = 0; t < set.takes.length; t++) {
+      frequencies.forEach((f, c) => {
+        standardised[t * width + f] = shift[t * frequencies.length + c]! / uncertainty[t]!;
+      });
     }
   }
   return neighbourCorrelation(standardised, set.takes.length, width);

@@ -80,7 +80,7 @@ function responseNodes(
     });
   }
   const known = new Set(set.takes.flatMap((take) => [take.emitter, take.receiver]));
-  for (const unit of reversible) if (!known.has(unit)) faults.push(unknownUnit('--reversible', unit, known));
+  for (const unit of reversible) if (!known.has(unit)) faults.push(unknownUnit({ file: '--reversible' }, unit, known));
   const reversibleClasses = new Set(reversible.map((unit) => classes.nameOf(unit)));
   const names: string[] = [];
   const linkByKey = new Map<string, number>();

@@ -36,6 +36,12 @@ function choiceOf({ pairs, whole }: ReciprocityTest): ModelChoice {
     return { kind: 'reciprocal', reason: 'No pair was taken both ways: reciprocity is assumed, and not tested.' };
   }
   const bothWays = pairs === 1 ? '1 pair was' : `${pairs} pairs were`;
+  if (Number.isNaN(whole.rmsDifference)) {
+    return {
+      kind: 'reciprocal',
+      reason: `${bothWays} taken both ways, but not in the same third-octave: reciprocity is assumed, and not tested.`,
+    };
+  }
   const differ = `${bothWays} taken both ways and differ by ${whole.rmsDifference.toPrecision(2)} dB (root mean square)`;
   if (Number.isNaN(whole.pValue)) {
     return {

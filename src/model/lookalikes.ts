@@ -23,7 +23,7 @@ export function classesOf(set: TakeSet, groups: readonly (readonly string[])[], 
     }
     const joined = new Set<string>();
     for (const unit of group) {
-      if (!known.has(unit)) faults.push(unknownUnit('--lookalikes', unit, known));
+      if (!known.has(unit)) faults.push(unknownUnit({ file: '--lookalikes' }, unit, known));
       for (const member of groupOf.get(unit) ?? [unit]) joined.add(member);
     }
     for (const unit of joined) groupOf.set(unit, joined);

@@ -40,7 +40,7 @@ export function pathTerms(set: TakeSet, option: ModelOptions['path'], faults: In
       exact.set(label, interpolateOverLog(entry.frequency, entry.level, set.frequencies));
       continue;
     }
-    if (entry?.uncertainty.some(Number.isNaN)) faults.push(someWithoutUncertainty(label));
+    if (entry?.uncertainty.some(Number.isNaN)) faults.push(someWithoutUncertainty(entry));
     numberOf.set(label, links.length);
     links.push({ name: label === '' ? 'path without a name' : `path ${label}`, prior: entry && priorOf(entry, set) });
   }
@@ -62,7 +62,7 @@ function priorOf(entry: PathLevel, set: TakeSet): Prior {
 function noSuchPath(table: readonly PathLevel[], labels: readonly string[]): InputFault {
   const named = labels.filter((label) => label !== '');
   return {
-    place: { file: '--path' },
+    place: table[0] === undefined ? { file: '--path' } : { ...table[0].place, column: 'path' },
     found: `levels for ${table.map(({ path }) => path).join(', ') || 'no path'}`,
     expected:
       named.length === 0
@@ -72,9 +72,9 @@ function noSuchPath(table: readonly PathLevel[], labels: readonly string[]): Inp
   };
 }
 
-function someWithoutUncertainty(path: string): InputFault {
+function someWithoutUncertainty({ path, place }: PathLevel): InputFault {
   return {
-    place: { file: '--path', column: 'u_db' },
+    place: { ...place, column: 'u_db' },
     found: `levels of the path ${path} of which some have an uncertainty and some have none`,
     expected: 'an uncertainty for all of them (a known path), or for none (an exact one)',
     remedy: 'Fill in `u_db` for this path, or leave it out.',

@@ -22,7 +22,7 @@ export function referencePriors(
     if (response === undefined) continue;
     if (priors.has(response.link)) {
       faults.push({
-        place: { file: '--refs' },
+        place: { ...reference.place, column: 'unit' },
         found: `a second certificate for the response of ${reference.unit}`,
         expected: 'one certificate a response; look-alikes have one response together',
         remedy: 'Keep the one to be used.',
@@ -33,7 +33,7 @@ export function referencePriors(
     const uncertainty = interpolateOverLog(reference.frequency, reference.uncertainty, set.frequencies);
     if (value.every(Number.isNaN)) {
       faults.push({
-        place: { file: '--refs' },
+        place: { ...reference.place, column: 'frequency_hz' },
         found: `a certificate of ${reference.unit} that reaches none of the frequencies of the takes`,
         expected: 'at least two frequencies with a frequency of the takes between them, or the same frequencies',
         remedy: 'Check the unit of frequency in the certificate, or take it away.',
@@ -51,15 +51,15 @@ function responseOf(
   responses: readonly Response[],
   faults: InputFault[],
 ): Response | undefined {
-  const fault = (found: string, expected: string, remedy: string) => {
-    faults.push({ place: { file: '--refs' }, found, expected, remedy });
+  const fault = (column: 'mount' | 'role', found: string, expected: string, remedy: string) => {
+    faults.push({ place: { ...reference.place, column }, found, expected, remedy });
     return undefined;
   };
   const ofUnit = responses.filter((response) => response.unit === reference.unit);
   if (ofUnit.length === 0) {
     faults.push(
       unknownUnit(
-        '--refs',
+        { ...reference.place, column: 'unit' },
         reference.unit,
         responses.map(({ unit }) => unit),
       ),
@@ -69,6 +69,7 @@ function responseOf(
   const mounts = [...new Set(ofUnit.map((response) => response.mount))];
   if (reference.mount === '' && mounts.length > 1) {
     return fault(
+      'mount',
       `a reference for ${reference.unit} without a mount`,
       `one of its mounts: ${mounts.join(', ')}`,
       'Add a column `mount` to the references.',
@@ -77,6 +78,7 @@ function responseOf(
   const mounted = ofUnit.filter((response) => reference.mount === '' || response.mount === reference.mount);
   if (mounted.length === 0) {
     return fault(
+      'mount',
       `a reference for ${reference.unit} mounted ${reference.mount}`,
       `one of its mounts in the takes: ${mounts.map((mount) => mount || '(none named)').join(', ')}`,
       'Use the same mount labels in takes and references.',
@@ -85,6 +87,7 @@ function responseOf(
   if (reference.role !== 'both') {
     if (choice.kind === 'reciprocal') {
       return fault(
+        'role',
         `a reference for ${reference.unit} in the role ${reference.role} with the reciprocal model`,
         'a reference without a role, for its one response',
         'Leave the column `role` out, or use --model directional.',
@@ -94,6 +97,7 @@ function responseOf(
     return (
       inRole ??
       fault(
+        'role',
         `a reference for ${reference.unit} in the role ${reference.role}`,
         `the role it has in the takes, ${mounted.map((response) => response.role).join(' and ')}`,
         'Correct the column `role`.',
@@ -102,6 +106,7 @@ function responseOf(
   }
   if (new Set(mounted.map((response) => response.link)).size > 1) {
     return fault(
+      'role',
       `a reference for ${reference.unit} without a role, while it both emits and receives`,
       'the role emit or receive',
       'Add a column `role` to the references.',

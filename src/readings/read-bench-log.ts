@@ -3,7 +3,7 @@ import type { ReadingCollector } from './collect-readings.ts';
 import { formulaName, READING_COLUMNS, type ReadingColumn } from './column-vocabulary.ts';
 import type { LevelFormula } from './level-formula.ts';
 import type { NumberReader } from './number-text.ts';
-import { numericColumns, rejectInto } from './read-long.ts';
+import { numberColumns, rejectInto } from './read-long.ts';
 import type { LoggedTake } from './read-spectrum.ts';
 import type { TablePlan } from './read-table.ts';
 import { OPTIONAL_NAMES, OPTIONAL_NUMBERS, type Reject, type TakeNumbers } from './reading-values.ts';
@@ -48,7 +48,7 @@ export function readBenchLog(
   const reject = rejectInto(collector, header.file);
   const remarks = fewRemarks(header.file, collector);
   return {
-    numeric: [...numericColumns(header), ...namedAt],
+    ...numberColumns(header, namedAt),
     start: (number) => ({
       row(fields, line) {
         const path = fields[file.index]!.trim();

@@ -1,9 +1,12 @@
 import { InputError, type InputFault } from '../quantity/input-fault.ts';
+import type { Place } from '../quantity/place.ts';
 import { type ColumnRule, meaningOf } from './column-vocabulary.ts';
 import type { NumberReader } from './number-text.ts';
+import { frequencyTrouble, levelTrouble } from './physical-limits.ts';
 import { readTable } from './read-table.ts';
+import type { InputFile } from './readings.ts';
 import type { Source } from './source.ts';
-import { missingColumns, readHeader, type TableHeader } from './table-header.ts';
+import { missingColumns, readHeader, type TableHeader, unknownNotice } from './table-header.ts';
 
 /** A row of a table in which every row counts, such as a certificate. */
 export interface EntryRow<Name extends string> {
@@ -20,36 +23,51 @@ export interface EntryTable<Name extends string, Entry> {
   readonly rules: readonly ColumnRule<Name>[];
   readonly required: readonly Name[];
   readonly numeric: readonly Name[];
+  /** Those of them in dB. */
+  readonly decibels: readonly Name[];
   readonly example: string;
+  readonly layout: InputFile['layout'];
   /** Called once the header is understood. */
   readonly checkHeader?: (header: TableHeader<Name>) => InputFault[];
   /** Undefined, after a fault, where the row cannot be used. */
   readonly entry: (row: EntryRow<Name>) => Entry | undefined;
 }
 
+/** What a table gave, with its file and what is worth saying about it. */
+export interface Entries<Entry> {
+  readonly entries: readonly Entry[];
+  readonly file: InputFile;
+  readonly notices: readonly string[];
+}
+
 /**
- * Reads a table in which each row must be usable: a number that the user vouches for is never left out.
+ * Reads a table in which each row must be usable: a number that the user vouches for is never left out. Columns that are
+ * not known are, with a notice.
  * @throws InputError with all faults of the file.
  */
 export async function readEntries<Name extends string, Entry>(
   source: Source,
   table: EntryTable<Name, Entry>,
-): Promise<Entry[]> {
+): Promise<Entries<Entry>> {
   const entries: Entry[] = [];
+  const notices: string[] = [];
   const faults: InputFault[] = [];
   const { rules, required, example } = table;
-  await readTable(source, {
+  const { sha256, bytes, rows } = await readTable(source, {
     knows: (header) => meaningOf(header, rules) !== undefined,
     example,
     onBytes: () => {},
-    onNotice: () => {},
+    onNotice: (notice) => notices.push(notice),
     header(fields, line) {
       const header = readHeader(source.name, fields, line, rules);
       const headerFaults = [...header.faults, ...missingColumns(header, required, rules, example)];
       headerFaults.push(...(table.checkHeader?.(header) ?? []));
       if (headerFaults.length > 0) throw new InputError(headerFaults);
+      notices.push(...header.notices, ...[unknownNotice(header) ?? []].flat());
+      const columns = (names: readonly Name[]) => names.flatMap((name) => header.known.get(name)?.index ?? []);
       return {
-        numeric: table.numeric.flatMap((name) => header.known.get(name)?.index ?? []),
+        numeric: columns(table.numeric),
+        decibels: columns(table.decibels),
         start: (number) => ({
           row(values, at) {
             const before = faults.length;
@@ -69,7 +87,7 @@ export async function readEntries<Name extends string, Entry>(
     },
   });
   if (faults.length > 0) throw new InputError(faults);
-  return entries;
+  return { entries, file: { name: source.name, layout: table.layout, sha256, bytes, rows }, notices };
 }
 
 function entryRow<Name extends string>(
@@ -121,13 +139,19 @@ export function frequencyAndLevel<Name extends string>(
   const frequency = row.number('frequency');
   const level = row.number('level');
   if (frequency === undefined || level === undefined) return undefined;
-  if (frequency > 0) return { frequency, level };
-  row.fault('frequency', `\`${row.text('frequency')}\``, 'a frequency above 0', 'Correct the frequency.');
-  return undefined;
+  const troubles = [
+    ['frequency', frequencyTrouble(frequency)],
+    ['level', levelTrouble(level)],
+  ] as const;
+  const found = troubles.filter(([, trouble]) => trouble !== '');
+  for (const [name, trouble] of found) {
+    row.fault(name, `\`${row.text(name)}\`: ${trouble}`, `a ${name} that can be measured`, `Correct the ${name}.`);
+  }
+  return found.length === 0 ? { frequency, level } : undefined;
 }
 
 /**
- * Brings the values of each key together, frequencies ascending, keys in the order of their first row.
+ * Brings the values of each key together, frequencies ascending, keys in the order of their first row, with its place.
  * @throws InputError where a frequency comes twice for one key.
  */
 export function spectraOf<Key extends object>(
@@ -135,19 +159,20 @@ export function spectraOf<Key extends object>(
   entries: readonly { readonly key: Key; readonly value: EntryValue }[],
 ): {
   readonly key: Key;
+  readonly place: Place;
   readonly frequency: Float64Array;
   readonly level: Float64Array;
   readonly uncertainty: Float64Array;
 }[] {
-  const groups = new Map<string, { key: Key; values: EntryValue[] }>();
+  const groups = new Map<string, { key: Key; place: Place; values: EntryValue[] }>();
   for (const { key, value } of entries) {
     const name = JSON.stringify(key);
     const group = groups.get(name);
-    if (group === undefined) groups.set(name, { key, values: [value] });
+    if (group === undefined) groups.set(name, { key, place: { file, line: value.line }, values: [value] });
     else group.values.push(value);
   }
   const faults: InputFault[] = [];
-  const spectra = [...groups.values()].map(({ key, values }) => {
+  const spectra = [...groups.values()].map(({ key, place, values }) => {
     values.sort((a, b) => a.frequency - b.frequency || a.line - b.line);
     values.forEach((value, i) => {
       const before = values[i - 1];
@@ -162,7 +187,7 @@ export function spectraOf<Key extends object>(
       });
     });
     const column = (name: 'frequency' | 'level' | 'uncertainty') => Float64Array.from(values, (value) => value[name]);
-    return { key, frequency: column('frequency'), level: column('level'), uncertainty: column('uncertainty') };
+    return { key, place, frequency: column('frequency'), level: column('level'), uncertainty: column('uncertainty') };
   });
   if (faults.length > 0) throw new InputError(faults);
   return spectra;

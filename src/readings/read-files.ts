@@ -8,7 +8,7 @@ import { LONG_EXAMPLE, readLong } from './read-long.ts';
 import { readSpectrum, SPECTRUM_EXAMPLE, type ToldHeaders } from './read-spectrum.ts';
 import { readTable } from './read-table.ts';
 import { pairOf, readWide, WIDE_EXAMPLE } from './read-wide.ts';
-import type { InputFile, ReadingOptions, Readings } from './readings.ts';
+import type { InputFile, ReadingLayout, ReadingOptions, Readings } from './readings.ts';
 import type { Source } from './source.ts';
 import { readHeader } from './table-header.ts';
 
@@ -27,7 +27,7 @@ const EXAMPLE = {
   wide: WIDE_EXAMPLE,
   'bench log': LOG_EXAMPLE,
   take: SPECTRUM_EXAMPLE,
-} as const satisfies Record<InputFile['layout'], string>;
+} as const satisfies Record<ReadingLayout, string>;
 
 /**
  * Reads pair measurements in any mix of layouts and dialects. Rows that cannot be used are kept in `unused` with their
@@ -72,7 +72,7 @@ async function collectFaults(collector: ReadingCollector, work: () => Promise<vo
 async function readSource(source: Source, reading: Reading): Promise<void> {
   const { collector, formula, rules, onBytes } = reading;
   const logged: LogRow[] = [];
-  let layout: InputFile['layout'] = 'long';
+  let layout: ReadingLayout = 'long';
   const before = usedSoFar(collector);
   const facts = await readTable(source, {
     knows: (header) => meaningOf(header, READING_COLUMNS) !== undefined || pairOf(header) !== undefined,
@@ -157,7 +157,7 @@ function usedSoFar({ count, unusedRows, faults }: ReadingCollector) {
 /** A file in which nothing can be used stops the run, with the first row's reason and how often it comes. */
 function refuseUseless(
   file: string,
-  layout: InputFile['layout'],
+  layout: ReadingLayout,
   before: ReturnType<typeof usedSoFar>,
   collector: ReadingCollector,
 ): void {

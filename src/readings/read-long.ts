@@ -2,6 +2,7 @@ import { InputError } from '../quantity/input-fault.ts';
 import type { ReadingCollector } from './collect-readings.ts';
 import { formulaName, READING_COLUMNS, type ReadingColumn } from './column-vocabulary.ts';
 import { type LevelFormula, requireColumns } from './level-formula.ts';
+import type { NumberColumns } from './number-text.ts';
 import type { TablePlan } from './read-table.ts';
 import { type Reject, rowValues } from './reading-values.ts';
 import { missingColumns, type TableHeader, unknownNotice } from './table-header.ts';
@@ -22,6 +23,7 @@ const NUMERIC: readonly ReadingColumn[] = [
   'gain',
   'distance',
 ];
+const DECIBELS: readonly ReadingColumn[] = ['level', 'uncertainty', 'noise', 'gain'];
 
 /**
  * Reads a row per reading.
@@ -42,7 +44,7 @@ export function readLong(
   if (unknown !== undefined) collector.notice(unknown);
   const reject = rejectInto(collector, header.file);
   return {
-    numeric: [...numericColumns(header), ...named],
+    ...numberColumns(header, named),
     start(number) {
       const values = rowValues(header, number, formula, reject);
       const takes = takeOfRow(header, number, collector, reject);
@@ -62,9 +64,14 @@ export function readLong(
   };
 }
 
-/** Columns that the program reads numbers from. */
-export function numericColumns(header: TableHeader<ReadingColumn>): number[] {
-  return NUMERIC.flatMap((name) => header.known.get(name)?.index ?? []);
+/**
+ * Columns that the program reads numbers from.
+ * @param named those that the formula names.
+ */
+export function numberColumns(header: TableHeader<ReadingColumn>, named: readonly number[]): NumberColumns {
+  const known = NUMERIC.flatMap((name) => header.known.get(name) ?? []);
+  const decibels = DECIBELS.flatMap((name) => header.known.get(name) ?? []).filter(({ linear }) => !linear);
+  return { numeric: [...known.map(({ index }) => index), ...named], decibels: decibels.map(({ index }) => index) };
 }
 
 /** Columns that the formula names. */

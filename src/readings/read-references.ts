@@ -1,6 +1,8 @@
 import type { InputFault } from '../quantity/input-fault.ts';
 import { REFERENCE_COLUMNS, type ReferenceColumn } from './column-vocabulary.ts';
+import { uncertaintyTrouble } from './physical-limits.ts';
 import { type EntryRow, frequencyAndLevel, readEntries, spectraOf } from './read-entries.ts';
+import type { InputFile } from './readings.ts';
 import type { Reference } from './references.ts';
 import type { Source } from './source.ts';
 import type { TableHeader } from './table-header.ts';
@@ -17,22 +19,32 @@ const ROLES: ReadonlyMap<string, Reference['role']> = new Map([
   ['receiver', 'receive'],
 ]);
 
+/** The certificates of a table, with its file and what is worth saying about it. */
+export interface ReferencesRead {
+  readonly references: readonly Reference[];
+  readonly file: InputFile;
+  readonly notices: readonly string[];
+}
+
 /**
  * Reads the levels that certificates give (`--refs`): unit, frequency, level, and a standard uncertainty `u_db` or an
  * expanded one with its coverage factor (`expanded_db` and `k`). Optional: role (blank for both) and mount. 0 dB is a
- * level here. Columns that are not known are passed over.
+ * level here. Columns that are not known are left out, with a notice.
  * @throws InputError with every fault: no row of a certificate is left out.
  */
-export async function readReferences(source: Source): Promise<Reference[]> {
-  const entries = await readEntries(source, {
+export async function readReferences(source: Source): Promise<ReferencesRead> {
+  const { entries, file, notices } = await readEntries(source, {
     rules: REFERENCE_COLUMNS,
     required: ['unit', 'frequency', 'level'],
     numeric: ['frequency', 'level', 'uncertainty', 'expanded', 'k'],
+    decibels: ['level', 'uncertainty', 'expanded'],
     example: EXAMPLE,
+    layout: 'references',
     checkHeader: uncertaintyFaults,
     entry: entryOf,
   });
-  return spectraOf(source.name, entries).map(({ key, ...spectrum }) => ({ ...key, ...spectrum }));
+  const references = spectraOf(source.name, entries).map(({ key, ...spectrum }) => ({ ...key, ...spectrum }));
+  return { references, file, notices };
 }
 
 function uncertaintyFaults(header: TableHeader<ReferenceColumn>): InputFault[] {
@@ -85,13 +97,16 @@ function standardUncertainty(row: EntryRow<ReferenceColumn>): number | undefined
   const given = row.number(expanded === '' ? 'uncertainty' : 'expanded');
   if (factor === undefined || given === undefined) return undefined;
   if (!(factor > 0)) row.fault('k', `\`${row.text('k')}\``, 'a coverage factor above 0', 'Correct k.');
-  if (!(given > 0)) {
+  // Without a factor that can be used, the uncertainty is judged by itself.
+  const uncertainty = factor > 0 ? given / factor : given;
+  const trouble = uncertaintyTrouble(uncertainty);
+  if (trouble !== '') {
     row.fault(
       expanded === '' ? 'uncertainty' : 'expanded',
-      `\`${standard}${expanded}\``,
+      `\`${standard}${expanded}\`: ${trouble}`,
       'an uncertainty above 0',
       'Correct the uncertainty; a certificate without one fixes nothing.',
     );
   }
-  return factor > 0 && given > 0 ? given / factor : undefined;
+  return factor > 0 && trouble === '' ? uncertainty : undefined;
 }

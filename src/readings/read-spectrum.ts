@@ -3,7 +3,7 @@ import type { ReadingCollector } from './collect-readings.ts';
 import { type ColumnRule, formulaName, type ReadingColumn } from './column-vocabulary.ts';
 import { type LevelFormula, requireColumns } from './level-formula.ts';
 import { decimalMarkOf, numberReader } from './number-text.ts';
-import { numericColumns, rejectInto } from './read-long.ts';
+import { numberColumns, rejectInto } from './read-long.ts';
 import { lengthReason } from './read-table.ts';
 import { OPTIONAL_NAMES, rowValues, type TakeNumbers } from './reading-values.ts';
 import type { TakeHeader } from './readings.ts';
@@ -68,9 +68,9 @@ export async function readSpectrum(
   reader.push('\n'.repeat(from) + lines.slice(from).join('\n'));
   reader.finish();
 
-  const mark = decimalMarkOf(
+  const { mark } = decimalMarkOf(
     records.map(({ fields }) => fields),
-    [...numericColumns(header), ...named],
+    numberColumns(header, named),
   );
   const number = numberReader(mark);
   const reject = rejectInto(collector, source.name);

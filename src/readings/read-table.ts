@@ -1,14 +1,12 @@
 import { InputError } from '../quantity/input-fault.ts';
-import { decimalMarkOf, type NumberReader, numberReader } from './number-text.ts';
+import { decimalMarkOf, type NumberColumns, type NumberReader, numberReader } from './number-text.ts';
 import { recordReader } from './records.ts';
 import { type Separator, sniffSeparator } from './separator.ts';
 import type { Source } from './source.ts';
 import { textBlocks } from './text-blocks.ts';
 
-/** How the rows below a header are to be read. */
-export interface TablePlan {
-  /** Columns that hold numbers; the decimal mark is found in them. */
-  readonly numeric: readonly number[];
+/** How the rows below a header are to be read. The decimal mark is found in the columns that hold numbers. */
+export interface TablePlan extends NumberColumns {
   /** Called before the first row, with the reader of this file's numbers. */
   start(number: NumberReader): RowSink;
 }
@@ -41,8 +39,9 @@ export interface TableFacts {
   readonly headerLine: number;
 }
 
-/** Rows that are looked at before the decimal mark is decided. */
+/** Rows that are looked at before the decimal mark is decided; ten times as many, and again, where they do not tell. */
 const SAMPLE_ROWS = 50;
+const MOST_SAMPLE_ROWS = 5000;
 
 /**
  * Reads a table with a header line, row by row.
@@ -58,6 +57,7 @@ export async function readTable(source: Source, kind: TableKind): Promise<TableF
   let plan: TablePlan | undefined;
   let sink: RowSink | undefined;
   let sample: { fields: string[]; line: number }[] = [];
+  let sampleRows = SAMPLE_ROWS;
   let rows = 0;
   let outcommented = 0;
   let firstOutcommented = 0;
@@ -67,11 +67,12 @@ export async function readTable(source: Source, kind: TableKind): Promise<TableF
     if (count === headers || (count >= named && onlyBlanksFrom(fields, Math.min(headers, count)))) to.row(fields, line);
     else to.reject(line, fields.join(separator).slice(0, 200), lengthReason(count, headers, separator));
   };
-  const begin = (): RowSink => {
-    const mark = decimalMarkOf(
+  const sampledMark = () =>
+    decimalMarkOf(
       sample.map(({ fields }) => fields),
-      plan!.numeric,
+      plan!,
     );
+  const begin = (mark = sampledMark().mark): RowSink => {
     const started = plan!.start(numberReader(mark));
     sink = started;
     for (const { fields, line } of sample) takeRow(started, fields, line);
@@ -101,7 +102,10 @@ export async function readTable(source: Source, kind: TableKind): Promise<TableF
       if (sink !== undefined) takeRow(sink, fields, line);
       else {
         sample.push({ fields, line });
-        if (sample.length >= SAMPLE_ROWS) begin();
+        if (sample.length < sampleRows) return;
+        const { mark, isAmbiguous } = sampledMark();
+        if (isAmbiguous && sampleRows < MOST_SAMPLE_ROWS) sampleRows *= 10;
+        else begin(mark);
       }
     },
   });

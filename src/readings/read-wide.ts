@@ -2,9 +2,10 @@ import { InputError, type InputFault } from '../quantity/input-fault.ts';
 import { ownText, type ReadingCollector, type ReadingValues } from './collect-readings.ts';
 import { headerParts, type ReadingColumn } from './column-vocabulary.ts';
 import { type LevelFormula, requireColumns } from './level-formula.ts';
+import { levelTrouble } from './physical-limits.ts';
 import { rejectInto } from './read-long.ts';
 import type { TablePlan } from './read-table.ts';
-import { columnLevel, frequencyTrouble } from './reading-values.ts';
+import { columnFrequency, columnLevel } from './reading-values.ts';
 import { type KnownColumn, type TableHeader, unknownNotice } from './table-header.ts';
 
 /** The right form, for messages. */
@@ -58,6 +59,8 @@ export function readWide(
   const reject = rejectInto(collector, header.file);
   return {
     numeric: [frequency.index, ...pairs.map(({ index }) => index)],
+    // With a formula, a cell may hold anything.
+    decibels: formula === undefined ? pairs.map(({ index }) => index) : [],
     start(number) {
       const columns = pairs.map(({ index, text, pair }) => ({
         column: { index, header: ownText(text), factor: 1, linear: false } satisfies KnownColumn,
@@ -69,12 +72,8 @@ export function readWide(
       const failures: { line: number; column: string }[] = [];
       return {
         row(fields, line) {
-          const text = fields[frequency.index]!;
-          values.frequency = number.read(text) * frequency.factor;
-          if (!(values.frequency > 0)) {
-            reject(line, frequency.header, text, frequencyTrouble(number, text));
-            return;
-          }
+          values.frequency = columnFrequency(frequency, fields[frequency.index]!, number, line, reject);
+          if (Number.isNaN(values.frequency)) return;
           for (const entry of columns) {
             values.level = columnLevel(
               entry.column,
@@ -92,6 +91,11 @@ export function readWide(
               values.level = formula.level(inputs);
               if (!Number.isFinite(values.level)) {
                 failures.push({ line, column: entry.column.header });
+                continue;
+              }
+              const trouble = levelTrouble(values.level);
+              if (trouble !== '') {
+                reject(line, entry.column.header, `${values.level}`, `the formula makes this of the cell: ${trouble}`);
                 continue;
               }
             }

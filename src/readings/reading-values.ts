@@ -3,6 +3,14 @@ import type { ReadingCollector, ReadingValues } from './collect-readings.ts';
 import { formulaName, meaningOf, READING_COLUMNS, type ReadingColumn } from './column-vocabulary.ts';
 import type { LevelFormula } from './level-formula.ts';
 import type { NumberReader } from './number-text.ts';
+import {
+  averagesTrouble,
+  coherenceTrouble,
+  frequencyTrouble,
+  LARGEST_LEVEL,
+  levelTrouble,
+  uncertaintyTrouble,
+} from './physical-limits.ts';
 import type { KnownColumn, TableHeader } from './table-header.ts';
 
 /** Makes the numbers of readings from the rows of one table. */
@@ -40,11 +48,11 @@ export type Reject = (line: number, column: string, value: string, reason: strin
 
 /** Columns whose numbers a row may leave out, and what is wrong with a number that they cannot have. */
 export const OPTIONAL_NUMBERS = {
-  uncertainty: (value: number) => (value > 0 ? '' : 'a standard uncertainty must be above 0'),
-  averages: (value: number) => (value >= 1 ? '' : 'the number of averages must be 1 or more'),
-  coherence: (value: number) => (value > 0 && value <= 1 ? '' : 'a coherence lies above 0 and not above 1'),
-  noise: () => '',
-  gain: () => '',
+  uncertainty: uncertaintyTrouble,
+  averages: averagesTrouble,
+  coherence: coherenceTrouble,
+  noise: levelTrouble,
+  gain: levelTrouble,
 } as const;
 
 type OptionalName = keyof typeof OPTIONAL_NUMBERS;
@@ -104,16 +112,20 @@ export function rowValues(
       values.coherence = given.coherence;
       values.noise = given.noise;
       values.gain = given.gain;
-      const text = fields[frequency.index]!;
-      values.frequency = number.read(text) * frequency.factor;
-      if (!(values.frequency > 0)) {
-        reject(line, frequency.header, text, frequencyTrouble(number, text));
-        return false;
-      }
+      values.frequency = columnFrequency(frequency, fields[frequency.index]!, number, line, reject);
+      if (Number.isNaN(values.frequency)) return false;
       if (optional.length > 0 && !readOptional(fields, line)) return false;
       if (byFormula !== undefined) {
         values.level = byFormula.level(fields, line);
-        if (!Number.isNaN(values.noise)) values.noise = byFormula.noise(fields, values.noise);
+        if (Number.isNaN(values.level)) return false;
+        if (!Number.isNaN(values.noise)) {
+          values.noise = byFormula.noise(fields, values.noise);
+          const trouble = levelTrouble(values.noise);
+          if (trouble !== '') {
+            reject(line, '', `${values.noise}`, `the formula makes this of the background noise: ${trouble}`);
+            return false;
+          }
+        }
       } else values.level = columnLevel(level!, fields[level!.index]!, number, line, reject);
       if (Number.isNaN(values.level)) return false;
       read++;
@@ -138,19 +150,30 @@ export function rowValues(
   };
 }
 
-/** Why a text is no frequency. */
-export function frequencyTrouble(number: NumberReader, text: string): string {
-  return Number.isNaN(number.read(text)) ? number.whyNot(text) : 'a frequency must be above 0';
+/** The frequency of one cell in hertz, or NaN after `reject`. */
+export function columnFrequency(
+  column: KnownColumn,
+  text: string,
+  number: NumberReader,
+  line: number,
+  reject: Reject,
+): number {
+  const value = number.read(text) * column.factor;
+  const trouble = Number.isNaN(value) ? number.whyNot(text) : frequencyTrouble(value);
+  if (trouble === '') return value;
+  reject(line, column.header, text, trouble);
+  return Number.NaN;
 }
 
 const NOT_MEASURED = 'not measured: blank';
 const ZERO_LEVEL = 'not measured: exactly 0 where a level is due';
 const ZERO_RATIO = 'not measured: an amplitude ratio of 0 has no level';
 const NEGATIVE_RATIO = 'an amplitude ratio must be above 0';
+const ABSURD_RATIO = `no amplitude ratio can lie beyond ${LARGEST_LEVEL} dB either way`;
 
 /**
- * The level of one cell, or NaN after `reject`. A blank means 'not measured', and so does an exact 0 unless it is for a
- * formula.
+ * The level of one cell, or NaN after `reject`. A blank means 'not measured', and so does an exact 0.
+ * @param isForFormula the cell is a number that a formula makes the level of, whatever it may be.
  */
 export function columnLevel(
   column: KnownColumn,
@@ -158,16 +181,20 @@ export function columnLevel(
   number: NumberReader,
   line: number,
   reject: Reject,
-  zeroCounts = false,
+  isForFormula = false,
 ): number {
   const value = number.read(text);
   let reason: string;
   if (Number.isNaN(value)) reason = text.trim() === '' ? NOT_MEASURED : number.whyNot(text);
   else if (column.linear) {
-    if (value > 0) return 20 * Math.log10(value);
-    reason = value === 0 ? ZERO_RATIO : NEGATIVE_RATIO;
-  } else if (value !== 0 || zeroCounts) return value;
-  else reason = ZERO_LEVEL;
+    const level = 20 * Math.log10(value);
+    if (Math.abs(level) <= LARGEST_LEVEL) return level;
+    reason = value === 0 ? ZERO_RATIO : value < 0 ? NEGATIVE_RATIO : ABSURD_RATIO;
+  } else if (isForFormula) return value;
+  else {
+    reason = value === 0 ? ZERO_LEVEL : levelTrouble(value);
+    if (reason === '') return value;
+  }
   reject(line, column.header, text, reason);
   return Number.NaN;
 }
@@ -200,7 +227,12 @@ function formulaLevel(
         return Number.NaN;
       }
       const level = formula.level(inputs);
-      if (Number.isFinite(level)) return level;
+      if (Number.isFinite(level)) {
+        const trouble = levelTrouble(level);
+        if (trouble === '') return level;
+        reject(line, '', `${level}`, `the formula makes this of the row: ${trouble}`);
+        return Number.NaN;
+      }
       failures++;
       first ??= {
         place: { file: header.file, line },

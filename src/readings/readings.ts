@@ -31,10 +31,13 @@ export interface UnusedRow {
   readonly reason: string;
 }
 
+/** How a file of readings is laid out; `take`: one that a bench log names. */
+export type ReadingLayout = 'long' | 'wide' | 'bench log' | 'take';
+
 /** An input file that was read. */
 export interface InputFile {
   readonly name: string;
-  readonly layout: 'long' | 'wide' | 'bench log' | 'take';
+  readonly layout: ReadingLayout | 'references' | 'path levels';
   readonly sha256: string;
   readonly bytes: number;
   /** Data rows, used or not. */

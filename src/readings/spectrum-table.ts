@@ -53,7 +53,9 @@ export function findSpectrum(
 }
 
 function allNumbers(fields: readonly string[]): boolean {
-  return fields.every((field) => !Number.isNaN(numberReader(undefined).read(field)));
+  // One reader a mark: which of them holds is decided later, over all rows.
+  const readers = [numberReader('.'), numberReader(',')];
+  return fields.every((field) => readers.some(({ read }) => !Number.isNaN(read(field))));
 }
 
 /**

@@ -1,6 +1,8 @@
 import { ownText, type ReadingCollector } from './collect-readings.ts';
 import type { ReadingColumn } from './column-vocabulary.ts';
+import { isIsoTime } from './iso-time.ts';
 import type { NumberReader } from './number-text.ts';
+import { distanceTrouble } from './physical-limits.ts';
 import type { Reject } from './reading-values.ts';
 import type { TakeHeader } from './readings.ts';
 import type { TableHeader } from './table-header.ts';
@@ -17,9 +19,6 @@ const IDENTITY = [
   'receiverSeating',
   'repeat',
 ] as const;
-
-/** ISO 8601 calendar dates, with or without a time: what can be put in order. */
-const ISO_8601 = /^\d{4}-?\d\d(?:-?\d\d(?:[T ]\d\d(?::?\d\d(?::?\d\d(?:[.,]\d+)?)?)?(?:Z|[+-]\d\d(?::?\d\d)?)?)?)?$/;
 
 /** What a row notes of its take; `undefined` after `reject` where an emitter or a receiver has no name. */
 export function takeHeaderOf(
@@ -63,7 +62,7 @@ function timeOf(
   line: number,
   notice: (text: string) => void,
 ): string {
-  if (text === '' || ISO_8601.test(text)) return text;
+  if (text === '' || isIsoTime(text)) return text;
   notice(`${header.file}:${line}: \`${text}\` is no ISO 8601 time such as 2026-05-04T10:30 and is not used.`);
   return '';
 }
@@ -79,8 +78,9 @@ function distanceOf(
   const text = column === undefined ? '' : fields[column.index]!;
   if (column === undefined || text.trim() === '') return undefined;
   const distance = number.read(text) * column.factor;
-  if (distance > 0) return distance;
-  notice(`${header.file}:${line}: the distance \`${text.trim()}\` is no length above 0 and is not used.`);
+  const trouble = distanceTrouble(distance);
+  if (trouble === '') return distance;
+  notice(`${header.file}:${line}: the distance \`${text.trim()}\` is ${trouble} and is not used.`);
   return undefined;
 }
 

@@ -3,7 +3,8 @@ import { jsonFigure } from './json-text.ts';
 import type { Inspection } from './result.ts';
 import { separabilityRecord } from './separability-json.ts';
 import { countsRecord, inputRecord } from './summary-json.ts';
-import { allNotices, structureVerdict } from './wording.ts';
+import { structureVerdict } from './verdict-wording.ts';
+import { allNotices } from './wording.ts';
 
 const INSPECTION_SCHEMA = 'oddloop-inspection/1';
 

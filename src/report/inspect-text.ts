@@ -3,20 +3,20 @@ import { placeText } from '../quantity/place.ts';
 import { benchCounts } from './bench-counts.ts';
 import { rangeGroups, seatingCounts, sessionCounts, type UnitStructure, unitStructures } from './bench-structure.ts';
 import { type NamedPart, namedParts } from './known-parts.ts';
+import { openSentence } from './open-wording.ts';
 import { pairMatrix } from './pair-matrix.ts';
 import { placedUnit } from './response-name.ts';
 import type { Inspection, TextStyle } from './result.ts';
 import { listed } from './terminal-summary.ts';
 import { textTable, wrapped } from './text-layout.ts';
+import { structureVerdict } from './verdict-wording.ts';
 import {
   allNotices,
   atFrequencies,
   counted,
   listText,
   modelSentences,
-  openSentence,
   readSentence,
-  structureVerdict,
   unusedSentence,
 } from './wording.ts';
 

@@ -1,4 +1,5 @@
 import { covarianceFile } from './covariance-json.ts';
+import { holdsTable } from './holds-table.ts';
 import { jsonText } from './json-text.ts';
 import { pairsTable } from './pairs-table.ts';
 import { residualsTable } from './residuals-table.ts';
@@ -15,6 +16,7 @@ export function outputFiles(result: Result): OutputFile[] {
     takesTable(result),
     pairsTable(result),
     residualsTable(result),
+    holdsTable(result),
     unusedTable(result),
     { name: 'summary.json', chunks: () => [jsonText(summaryRecord(result))] },
     covarianceFile(result),

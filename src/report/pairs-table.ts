@@ -10,6 +10,8 @@ const COLUMNS: readonly Column<PairFinding>[] = [
   { name: 'rms_residual_db', text: (pair) => levelCell(pair.rmsResidual) },
   { name: 'offset_db', text: (pair) => levelCell(pair.offset) },
   { name: 'redundancy', text: (pair) => figureCell(pair.redundancy) },
+  { name: 'p_value', text: (pair) => figureCell(pair.pValue) },
+  { name: 'verdict', text: (pair) => (pair.verdict === 'not tested' ? '' : pair.verdict) },
 ];
 
 /** `pairs.csv`: all takes of an emitter and a receiver together, with their number. */

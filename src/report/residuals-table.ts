@@ -22,7 +22,7 @@ const ROWS_A_CHUNK = 2000;
 /**
  * `residuals.csv`: every reading, take by take. A reading that could not be fitted, since the level of its path is not
  * known at its frequency, has its level only. The standardised residual w = residual / (u √redundancy) is absent where
- * there is no uncertainty or nothing checks the reading.
+ * there is no uncertainty or nothing checks the reading. A take that was left out has no redundancy, and w = residual / u.
  * The labels of a take are quoted once; the numbers need no quotes and are put together here, since millions of rows
  * take the writer several times as long.
  */
@@ -48,7 +48,9 @@ function* residualChunks({ set, solution }: Result): Iterable<string> {
       const residual = residuals[cell]!;
       const u = readingUncertainty.values[cell]!;
       const share = redundancy[cell]!;
-      const standardised = share > 0 && u > 0 ? residual / (u * Math.sqrt(share)) : Number.NaN;
+      // A reading that had no part in the fit deviates from it by its own u (and by that of the fit, not counted here).
+      const part = Number.isNaN(share) ? 1 : share;
+      const standardised = part > 0 && u > 0 ? residual / (u * Math.sqrt(part)) : Number.NaN;
       text += `${labels},${frequencies[f]!},${levelCell(level)},${levelCell(level - residual)},${levelCell(residual)},${uncertaintyText(u)},${levelCell(standardised, STANDARDISED_PLACES)},${redundancyText(share)}\n`;
       rows++;
       if (rows % ROWS_A_CHUNK > 0) continue;

@@ -1,4 +1,5 @@
 import { LINK_STATUS } from '../estimate/solution.ts';
+import type { HoldFinding } from '../findings/holds.ts';
 import type { Response } from '../model/model.ts';
 import type { LinkStatus } from '../model/separability.ts';
 import { coverageFactors } from '../numeric/student-t.ts';
@@ -17,6 +18,8 @@ interface ResponseRow {
   readonly uncertainty: number;
   readonly factor: number;
   readonly dof: number;
+  /** Whether the unit's response depends on its partner there; empty where it was not judged. */
+  readonly mounting: HoldFinding['verdict'] | '';
 }
 
 const COLUMNS: readonly Column<ResponseRow>[] = [
@@ -30,6 +33,7 @@ const COLUMNS: readonly Column<ResponseRow>[] = [
   { name: 'expanded_db', text: (row) => figureCell(row.factor * row.uncertainty) },
   { name: 'dof', text: (row) => figureCell(row.dof) },
   { name: 'status', text: (row) => row.status },
+  { name: 'mounting', text: (row) => row.mounting },
 ];
 
 /** `responses.csv`: every response at every frequency; an open one has neither level nor uncertainty. */
@@ -37,10 +41,12 @@ export function responsesTable(result: Result): OutputFile {
   return csvFile('responses.csv', COLUMNS, () => responseRows(result));
 }
 
-function* responseRows({ set, model, solution, coverage }: Result): Iterable<ResponseRow> {
+function* responseRows({ set, model, solution, examination, coverage }: Result): Iterable<ResponseRow> {
   const factorOf = coverageFactors(coverage);
   for (const response of model.responses) {
+    const own = examination.holds.filter(({ unit, mount }) => unit === response.unit && mount === response.mount);
     for (let f = 0; f < set.frequencies.length; f++) {
+      const frequency = set.frequencies[f]!;
       const cell = f * model.linksPerFrequency + response.link;
       const status = LINK_STATUS[solution.status[cell]!]!;
       const isOpen = status === 'open';
@@ -49,12 +55,13 @@ function* responseRows({ set, model, solution, coverage }: Result): Iterable<Res
       const dof = known ? solution.dof[cell]! : Number.NaN;
       yield {
         response,
-        frequency: set.frequencies[f]!,
+        frequency,
         status,
         level: isOpen ? Number.NaN : solution.estimates[cell]! + (response.offset?.[f] ?? 0),
         uncertainty,
         factor: known ? factorOf(dof) : Number.NaN,
         dof,
+        mounting: own.find(({ from, to }) => frequency >= from && frequency < to)?.verdict ?? '',
       };
     }
   }

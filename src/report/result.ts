@@ -23,6 +23,10 @@ export interface Result {
   readonly settings: Readonly<Record<string, unknown>>;
   /** Coverage probability of expanded uncertainties. */
   readonly coverage: number;
+  /** Chance that a set in which nothing is wrong gets any take flagged. */
+  readonly risk: number;
+  /** Effect of a partner in dB that does not matter. */
+  readonly tolerance: number;
   readonly input: InputSummary;
   readonly set: TakeSet;
   readonly model: Model;

@@ -3,7 +3,7 @@ import type { Model } from '../model/model.ts';
 import type { Pattern } from '../model/separability.ts';
 import { namedParts } from './known-parts.ts';
 import { roundedFrequency } from './number-text.ts';
-import { openSentence } from './wording.ts';
+import { openSentence } from './open-wording.ts';
 
 /** What can be told apart and what cannot, as a record for JSON. */
 export function separabilityRecord(

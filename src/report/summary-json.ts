@@ -5,7 +5,9 @@ import { roundedFrequency } from './number-text.ts';
 import { placedUnit } from './response-name.ts';
 import type { InputSummary, Result } from './result.ts';
 import { separabilityRecord } from './separability-json.ts';
-import { allNotices, CAUTIONS, verdict } from './wording.ts';
+import { verdict } from './verdict-wording.ts';
+import { mountingRecord, takesRecord } from './verdicts-json.ts';
+import { allNotices, CAUTIONS } from './wording.ts';
 
 const SUMMARY_SCHEMA = 'oddloop-summary/1';
 
@@ -47,6 +49,8 @@ export function summaryRecord(result: Result): Readonly<Record<string, unknown>>
       chi_square_per_dof: jsonFigure(whole.chiSquarePerDof),
       chi_square_status: availability(whole.chiSquarePerDof),
     },
+    takes: takesRecord(result),
+    mounting: mountingRecord(result),
     units: examination.units.map((unit) => unitRecord(result, unit)),
     gains: solution.gains.map((gain) => ({
       name: model.links[gain.link]!.name,

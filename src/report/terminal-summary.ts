@@ -1,22 +1,26 @@
 import type { UnitFinding } from '../findings/examination.ts';
 import { roundedText } from '../quantity/rounding.ts';
 import { benchCounts } from './bench-counts.ts';
+import { bandsWith, unitHolds } from './held-bands.ts';
+import { dependenceSentences, holdsCell } from './hold-wording.ts';
+import { openSentence } from './open-wording.ts';
 import { outputFiles } from './output-files.ts';
-import { responseName } from './response-name.ts';
+import { placedUnit, responseName } from './response-name.ts';
 import type { Result, TextStyle } from './result.ts';
+import { flaggedParagraphs, flaggedTakes, tieGroups, tieSentence } from './take-wording.ts';
 import { type TableRow, TERMINAL_WIDTH, textTable, wrapped } from './text-layout.ts';
+import { uncheckedSentences } from './unchecked-wording.ts';
+import { verdict } from './verdict-wording.ts';
 import {
   allNotices,
   CAUTIONS,
+  counted,
   gainSentence,
   modelSentences,
-  openSentence,
   percentText,
   readSentence,
   type Statement,
-  uncheckedSentence,
   unusedSentence,
-  verdict,
 } from './wording.ts';
 
 interface TerminalOptions {
@@ -25,15 +29,17 @@ interface TerminalOptions {
   readonly style: TextStyle;
 }
 
-/** What `solve` says at the end, at most 80 columns wide: verdict, units, what is open, where the files are. */
+/** What `solve` says at the end, at most 80 columns wide: verdict, units, takes to redo, what is open, where the files are. */
 export function terminalSummary(result: Result, { folder, style }: TerminalOptions): string {
   // Each section is a list of lines; an empty one is left out. Further sections are further entries.
   const sections: readonly (readonly string[])[] = [
     wrapped(readSentence(result.input, benchCounts(result.set, result.model))),
     verdict(result).flatMap((statement) => toned(statement, style)),
     unitTable(result, style),
-    basisLines(result),
+    dependenceLines(result, style),
+    flaggedLines(result, style),
     openLines(result, style),
+    basisLines(result),
     noticeLines(result, style),
     fileLines(result, folder, style),
     wrapped(CAUTIONS.join(' ')).map(style.faint),
@@ -49,17 +55,36 @@ function toned({ text, tone }: Statement, style: TextStyle): string[] {
 
 function unitTable(result: Result, style: TextStyle): string[] {
   const { model, examination, coverage } = result;
-  const header: TableRow = { cells: ['unit', 'level, dB', 'U, dB', 'ok', 'datum', 'open'], style: style.strong };
+  const holds = new Map(unitHolds(examination.holds).map((hold) => [hold.name, hold]));
+  // Where every level stands at every frequency, the verdict has said so.
+  const hasCounts = examination.units.some(({ counts }) => counts.datum + counts.open > 0);
+  const isTestable = examination.holds.some(({ verdict }) => verdict !== 'not testable');
+  const header = ['unit', 'level, dB', 'U, dB', ...(hasCounts ? ['ok', 'datum', 'open'] : [])];
   const rows = examination.units.map((unit): TableRow => {
+    const response = model.responses[unit.response]!;
     const { ok, datum, open } = unit.counts;
     const count = (value: number) => (value === 0 ? '·' : String(value));
+    const hold = holds.get(placedUnit(response));
     return {
-      cells: [responseName(model.responses[unit.response]!), ...levelCells(unit), count(ok), count(datum), count(open)],
-      style: open > 0 ? style.warning : undefined,
+      cells: [
+        responseName(response),
+        ...levelCells(unit),
+        ...(hasCounts ? [ok, datum, open].map(count) : []),
+        ...(isTestable ? [holdsCell(hold)] : []),
+      ],
+      style: hold !== undefined && bandsWith(hold, 'broken') > 0 ? style.bad : open > 0 ? style.warning : undefined,
     };
   });
-  const caption = `level: median over frequency; U: its typical expanded uncertainty (${percentText(coverage)}); ok, datum, open: number of frequencies`;
-  return [...textTable([header, ...rows]), ...wrapped(caption).map(style.faint)];
+  const caption = [
+    `level: median over frequency; U: its typical expanded uncertainty (${percentText(coverage)})`,
+    ...(hasCounts ? ['ok, datum, open: number of frequencies'] : []),
+    ...(isTestable ? ['holds: the bands where it does not depend on its partner'] : []),
+  ];
+  const head: TableRow = { cells: [...header, ...(isTestable ? ['holds'] : [])], style: style.strong };
+  return [
+    ...textTable([head, ...rows], TERMINAL_WIDTH, { lastIsWords: isTestable }),
+    ...wrapped(caption.join('; ')).map(style.faint),
+  ];
 }
 
 /** A level and its U, both with two digits of U. */
@@ -78,12 +103,49 @@ function basisLines({ model, solution }: Result): string[] {
   return sentences.filter((sentence) => sentence !== '').flatMap((sentence) => wrapped(sentence));
 }
 
-function openLines({ model, examination, set }: Result, style: TextStyle): string[] {
+/** Entries of a list before the rest is only counted. */
+const MOST_ENTRIES = 10;
+
+function dependenceLines(result: Result, style: TextStyle): string[] {
+  const sentences = dependenceSentences(result);
+  return listed('Responses that depend on the partner', capped(sentences, 'unit', 'holds.csv'), style);
+}
+
+/** A paragraph a line of thought, so that the eye finds take, size, reading and remedy at the same places. */
+function flaggedLines(result: Result, style: TextStyle): string[] {
+  const flagged = flaggedTakes(result.examination);
+  if (flagged.length === 0) return [];
+  const lines = flagged.slice(0, MOST_ENTRIES).flatMap((finding) => {
+    const [title = '', ...paragraphs] = flaggedParagraphs(result, finding);
+    const under = paragraphs.flatMap((text) =>
+      wrapped(text, { width: TERMINAL_WIDTH - INDENT.length, indent: INDENT }),
+    );
+    return [...wrapped(`- ${title}`, { indent: INDENT }).map(style.bad), ...under.map((line) => INDENT + line)];
+  });
+  const more = flagged.length - MOST_ENTRIES;
+  return [
+    style.strong(`Takes that disagree, worst first${result.examination.whole.isModelFailing ? '' : ': redo these'}`),
+    ...lines,
+    ...(more > 0 ? [`- And ${counted(more, 'more take')}: see takes.csv.`] : []),
+  ];
+}
+
+const INDENT = '  ';
+
+function openLines(result: Result, style: TextStyle): string[] {
+  const { examination, set } = result;
   const sentences = [
+    ...tieGroups(examination).map((group) => tieSentence(result, group)),
     ...examination.open.map((finding) => openSentence(finding, set.frequencies)),
-    uncheckedSentence(model, examination.units),
-  ].filter((sentence) => sentence !== '');
-  return listed('Open, or resting on a datum', sentences, style);
+    ...capped(uncheckedSentences(result), 'such take', 'takes.csv'),
+  ];
+  return listed('Open, tied, unchecked, or resting on a datum', sentences, style);
+}
+
+function capped(sentences: readonly string[], name: string, file: string): string[] {
+  const more = sentences.length - MOST_ENTRIES;
+  if (more <= 0) return [...sentences];
+  return [...sentences.slice(0, MOST_ENTRIES), `And ${counted(more, `more ${name}`)}: see ${file}.`];
 }
 
 function noticeLines({ input, set }: Result, style: TextStyle): string[] {

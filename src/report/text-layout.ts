@@ -63,9 +63,13 @@ const NARROWEST_LABEL = 8;
 
 /**
  * A table as lines: the first column starts at the left and is broken over lines where it is too wide for the rest, all
- * others end at the right.
+ * others end at the right, but the last one where it holds words.
  */
-export function textTable(rows: readonly TableRow[], width: number = TERMINAL_WIDTH): string[] {
+export function textTable(
+  rows: readonly TableRow[],
+  width: number = TERMINAL_WIDTH,
+  { lastIsWords = false } = {},
+): string[] {
   const safe = rows.map(({ cells, style }) => ({ cells: cells.map(visible), style }));
   const columns = Math.max(0, ...safe.map(({ cells }) => cells.length));
   const widths = Array.from({ length: columns }, (_, c) =>
@@ -75,7 +79,12 @@ export function textTable(rows: readonly TableRow[], width: number = TERMINAL_WI
   const labelWidth = Math.min(widths[0] ?? 0, Math.max(NARROWEST_LABEL, width - rest));
   return safe.flatMap(({ cells: [label = '', ...others], style }) => {
     const pieces = broken(label, labelWidth);
-    const numbers = others.map((cell, c) => GAP + ' '.repeat(widths[c + 1]! - displayWidth(cell)) + cell).join('');
+    const numbers = others
+      .map((cell, c) => {
+        const gap = ' '.repeat(widths[c + 1]! - displayWidth(cell));
+        return GAP + (lastIsWords && c === others.length - 1 ? cell + gap : gap + cell);
+      })
+      .join('');
     const first = padded(pieces[0]!, labelWidth) + numbers;
     const lines = [first.trimEnd(), ...pieces.slice(1)];
     return style === undefined ? lines : lines.map(style);

@@ -26,6 +26,7 @@ export function gatherTakes(readings: Readings, options: GatherOptions): TakeSet
   const spectra = takeSpectra(used);
   const table = frequencyTable(used.frequency);
   refuseRepeatedFrequencies(used, spectra, table);
+  sayWhatIsNotUsed(used, notices);
   const takes = readings.takes.map((header, t): Take => ({ ...header, id: takeId(t, readings.takes.length) }));
   if (options.grid.kind === 'as measured') return asMeasured(used, takes, spectra, table, notices);
   return regridded(used, takes, spectra, options.grid, notices);
@@ -69,6 +70,21 @@ function withinBand(readings: Readings, band: FrequencyRange, notices: string[])
     coherence: pick(readings.coherence),
     noise: pick(readings.noise),
   };
+}
+
+/** Columns that are kept and change nothing: one sentence each. */
+const NOT_USED = [
+  ['noise', 'noise_db', 'no background noise is taken off a level'],
+  ['averages', 'averages', 'no uncertainty is made of it'],
+  ['coherence', 'coherence', 'no uncertainty is made of it'],
+] as const;
+
+function sayWhatIsNotUsed(readings: Readings, notices: string[]): void {
+  for (const [name, title, instead] of NOT_USED) {
+    const given = readings[name]?.reduce((count, value) => count + (Number.isNaN(value) ? 0 : 1), 0) ?? 0;
+    if (given > 0)
+      notices.push(`${title} is given for ${given} of ${readings.count} readings and not used: ${instead}.`);
+  }
 }
 
 function refuseRepeatedFrequencies(readings: Readings, spectra: TakeSpectra, table: FrequencyTable): void {
@@ -187,9 +203,6 @@ function regridded(
       if (uncertainty !== undefined) uncertainty[cell] = spectrum.uncertainty[k]!;
     });
   });
-  if (readings.averages ?? readings.coherence ?? readings.noise) {
-    notices.push('averages, coherence and noise_db belong to single readings and are not carried to another grid.');
-  }
   return {
     takes,
     frequencies: table.frequencies,

@@ -39,6 +39,8 @@ export async function runStages(file: string, folder: string, report: (cost: Sta
     version: 'bench',
     settings: {},
     coverage,
+    risk,
+    tolerance,
     input,
     set,
     model,

@@ -110,7 +110,9 @@ describe('readRequest', () => {
       '--out',
       'FILE',
     ]);
-    expect(troubles[0]).toBe('--u: found "0,3"; expected a standard uncertainty in dB, above 0. Example: --u 0.3');
+    expect(troubles[0]).toBe(
+      '--u: found "0,3"; expected a standard uncertainty from 0.000001 to 1000 dB. Example: --u 0.3',
+    );
     for (const trouble of troubles) expect(trouble).toMatch(/found .*; expected .*Example: /);
   });
 

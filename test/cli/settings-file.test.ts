@@ -6,7 +6,6 @@ import { changedFiles, settingsOf } from '../../src/cli/inputs.ts';
 import { DEFAULT_SETTINGS } from '../../src/cli/settings.ts';
 import { readSettingsFile } from '../../src/cli/settings-file.ts';
 import { InputError } from '../../src/quantity/input-fault.ts';
-import type { Readings } from '../../src/readings/readings.ts';
 
 const folder = mkdtempSync(join(tmpdir(), 'oddloop-test-'));
 afterAll(() => rmSync(folder, { recursive: true }));
@@ -76,23 +75,23 @@ describe('settingsOf', () => {
 });
 
 describe('changedFiles', () => {
-  const readings = {
+  const input = {
     files: [
-      { name: 'a.csv', sha256: 'aa' },
-      { name: 'b.csv', sha256: 'bb' },
+      { name: 'a.csv', layout: 'long', sha256: 'aa', bytes: 1, rows: 1 },
+      { name: 'b.csv', layout: 'references', sha256: 'bb', bytes: 1, rows: 1 },
     ],
-  } as unknown as Readings;
+  } as const;
 
   it('names the files whose bytes differ from those of the run that is repeated', () => {
     const sha256 = new Map([
       ['a.csv', 'aa'],
       ['b.csv', 'b0'],
     ]);
-    expect(changedFiles(readings, { settings: {}, sha256 }).map((sentence) => sentence.slice(0, 5))).toEqual(['b.csv']);
+    expect(changedFiles(input, { settings: {}, sha256 }).map((sentence) => sentence.slice(0, 5))).toEqual(['b.csv']);
   });
 
   it('says nothing of files that the earlier run did not have', () => {
-    expect(changedFiles(readings, { settings: {}, sha256: new Map() })).toEqual([]);
-    expect(changedFiles(readings, undefined)).toEqual([]);
+    expect(changedFiles(input, { settings: {}, sha256: new Map() })).toEqual([]);
+    expect(changedFiles(input, undefined)).toEqual([]);
   });
 });

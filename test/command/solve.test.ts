@@ -1,4 +1,5 @@
 import { spawnSync } from 'node:child_process';
+import { createHash } from 'node:crypto';
 import { existsSync, mkdirSync, readdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { describe, expect, it } from 'vitest';
@@ -48,6 +49,53 @@ describe('oddloop solve', () => {
     expect(filesIn(bench.at('second'))).toEqual(filesIn(bench.at('first')));
     const { settings } = JSON.parse(readFileSync(bench.at('second/summary.json'), 'utf8'));
     expect(settings).toMatchObject({ files: ['bench.csv'], u: 0.3, band: '500 Hz..3 kHz', coverage: 0.9 });
+  });
+
+  it('keeps the SHA-256 of certificates and path levels with those of the readings, and what is worth saying of them', () => {
+    bench.write(
+      'bench.csv',
+      pairsCsv(RING_WITH_DIAGONALS)
+        .replace('level_db', 'level_db,path')
+        .replace(/(\.\d)$/gm, '$1,block'),
+    );
+    const tables = {
+      'refs.csv': 'unit,frequency_hz,level_db,u_db,laboratory\nN01,1000,-20,0.1,north\n',
+      'paths.csv': 'path,frequency,level_db\nblock,1000,0.5\nblock,4000,0.5\n',
+    };
+    for (const [name, text] of Object.entries(tables)) bench.write(name, text);
+    const options = ['--refs', 'refs.csv', '--path', 'paths.csv', '--u', '0.1'];
+    const { status } = bench.run('solve', 'bench.csv', ...options, ...RECIPROCAL);
+    expect(status).toBe(0);
+    const { input, notices } = JSON.parse(readFileSync(bench.at('result/summary.json'), 'utf8'));
+    const sha256 = (text: string) => createHash('sha256').update(text).digest('hex');
+    expect(input.files.slice(1)).toEqual([
+      { name: 'refs.csv', layout: 'references', sha256: sha256(tables['refs.csv']), bytes: 63, rows: 1 },
+      { name: 'paths.csv', layout: 'path levels', sha256: sha256(tables['paths.csv']), bytes: 58, rows: 2 },
+    ]);
+    expect(notices).toContain('refs.csv: the column `laboratory` is not known here and is kept out.');
+    expect(notices).toContain('paths.csv: the column `frequency` names no unit; its numbers are taken as Hz.');
+
+    bench.write('refs.csv', tables['refs.csv'].replace('-20', '-21'));
+    const again = bench.run('solve', '--settings', 'result/summary.json', '--out', 'again');
+    expect(again.stderr).toMatch(/^refs\.csv is not what it was/);
+  });
+
+  it('tells the faults of certificates and path levels together', () => {
+    bench.write('bench.csv', pairsCsv(RING_WITH_DIAGONALS));
+    bench.write('refs.csv', 'unit,frequency_hz,level_db,u_db\nN01,1000,loud,0.1\n');
+    bench.write('paths.csv', 'path,frequency_hz,level_db\nblock,low,0.5\n');
+    const { status, stderr } = bench.run(
+      'solve',
+      'bench.csv',
+      '--refs',
+      'refs.csv',
+      '--path',
+      'paths.csv',
+      ...RECIPROCAL,
+    );
+    expect(status).toBe(3);
+    expect(stderr).toContain('refs.csv:2 level_db');
+    expect(stderr).toContain('paths.csv:2 frequency_hz');
   });
 
   it('can repeat a run into its own folder', () => {

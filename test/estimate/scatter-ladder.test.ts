@@ -251,7 +251,7 @@ test('repeats that agree to the last digit: 0 dB, and whatever reseating changes
 
 /**
  * Simulation with known scatter that is smooth along frequency: 30 frequencies of a band are worth about 5 (width 3, the
- * hard case), while a test that took them for independent would alarm in a third of all cases.
+ * hard case), while a test that took them for independent would alarm in one case of five.
  */
 describe('in simulation', () => {
   const trials = 300;
@@ -271,6 +271,12 @@ describe('in simulation', () => {
     () => 2,
     () => 2,
   );
+  // Half of the pairs mounted three times and taken once each, the other half mounted once and taken four times.
+  const lopsided = allPairs(
+    6,
+    (pair) => (pair % 2 === 0 ? 3 : 1),
+    (pair) => (pair % 2 === 0 ? 1 : 4),
+  );
   const run = (
     plans: readonly Plan[],
     scatter: { repeat: number; reseat: number; partner: number },
@@ -289,6 +295,7 @@ describe('in simulation', () => {
   test.each([
     ['equal groups', equal],
     ['unequal groups', unequal],
+    ['lopsided groups', lopsided],
     ['four units', small],
   ] as const)('%s: the partner test alarms at its level where there is reseat scatter only', (_, plans) => {
     const alarms = share(

@@ -103,6 +103,7 @@ describe('reciprocal units by hand', () => {
 
 describe('known links', () => {
   const table = (level: readonly number[], u: readonly number[]) => ({
+    place: { file: 'table.csv', line: 2 },
     frequency: Float64Array.from(FREQUENCIES.slice(0, level.length)),
     level: Float64Array.from(level),
     uncertainty: Float64Array.from(u),

@@ -3,7 +3,7 @@ import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 
 /** Folder of the project. */
-export const PROJECT = fileURLToPath(new URL('../..', import.meta.url));
+const PROJECT = fileURLToPath(new URL('../..', import.meta.url));
 
 /** Text of a file, by its name relative to the project. */
 export const textOf = (name: string): string => readFileSync(join(PROJECT, name), 'utf8');

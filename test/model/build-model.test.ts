@@ -126,6 +126,7 @@ describe('levels of paths', () => {
   const table = (u: readonly number[]) => [
     {
       path: 'p',
+      place: { file: 'paths.csv', line: 2 },
       frequency: Float64Array.of(100, 10_000),
       level: Float64Array.of(-2, -6),
       uncertainty: Float64Array.from(u),
@@ -149,12 +150,14 @@ describe('levels of paths', () => {
   });
 
   it('an uncertainty at some frequencies of a path and not at others is a fault', () => {
-    expect(faultsOf(() => build(lines, { ...RECIPROCAL, path: table([NONE, 0.3]) }))).toContain('--path u_db');
+    expect(faultsOf(() => build(lines, { ...RECIPROCAL, path: table([NONE, 0.3]) }))).toContain('paths.csv:2 u_db');
   });
 
   it('levels for paths that no take names are a fault', () => {
     const unknown = [{ ...table([0.1, 0.1])[0]!, path: 'x' }];
-    expect(faultsOf(() => build(lines, { ...RECIPROCAL, path: unknown }))).toContain('levels for some of p, q');
+    const message = faultsOf(() => build(lines, { ...RECIPROCAL, path: unknown }));
+    expect(message).toContain('paths.csv:2 path: found levels for x');
+    expect(message).toContain('levels for some of p, q');
   });
 });
 

@@ -6,8 +6,8 @@ import { fUpper } from '../../src/numeric/f-distribution.ts';
 import { randomStream } from '../../src/numeric/random.ts';
 import { pairsOf, type TakeLine, takeSetOf } from '../take-set-of.ts';
 
-const choose = (lines: readonly TakeLine[], options: Partial<ModelOptions> = {}) =>
-  chooseModel(takeSetOf([1000], lines), { ...DEFAULT_MODEL_OPTIONS, ...options });
+const choose = (lines: readonly TakeLine[], options: Partial<ModelOptions> = {}, frequencies = [1000]) =>
+  chooseModel(takeSetOf(frequencies, lines), { ...DEFAULT_MODEL_OPTIONS, ...options });
 
 /** Both directions of a pair: there − here = difference. */
 const bothWays = (differences: Readonly<Record<string, number>>): TakeLine[] =>
@@ -65,7 +65,9 @@ describe('choice of the model', () => {
     expect(choose(pairsOf({ 'P>H': 0 })).kind).toBe('directional');
     expect(choose(pairsOf({ 'A>B': 0, 'B>C': 0 }), { reversible: ['B'] }).kind).toBe('directional');
     const one = Float64Array.of(1000);
-    const reference = { unit: 'B', mount: '', role: 'emit' as const, frequency: one, level: one, uncertainty: one };
+    const place = { file: 'refs.csv', line: 2 };
+    const spectrum = { frequency: one, level: one, uncertainty: one };
+    const reference = { unit: 'B', mount: '', role: 'emit' as const, place, ...spectrum };
     const { kind, reason } = choose(pairsOf({ 'A>B': 0, 'B>A': 0 }), { references: [reference] });
     expect(kind).toBe('directional');
     expect(reason).toContain('reference for B');
@@ -75,6 +77,16 @@ describe('choice of the model', () => {
     const assumed = choose(pairsOf({ 'A>B': 0, 'B>C': 0, 'C>A': 0 }));
     expect(assumed.kind).toBe('reciprocal');
     expect(assumed.reason).toContain('not tested');
+    const apart = choose(
+      [
+        { emitter: 'A', receiver: 'B', levels: [-3, Number.NaN] },
+        { emitter: 'B', receiver: 'A', levels: [Number.NaN, -4] },
+      ],
+      {},
+      [1000, 8000],
+    );
+    expect(apart.kind).toBe('reciprocal');
+    expect(apart.reason).toContain('not in the same third-octave');
     const tree = choose(bothWays({ 'A>B': 6, 'B>C': 5 }));
     expect(tree.kind).toBe('reciprocal');
     expect(tree.reason).toContain('assumed');

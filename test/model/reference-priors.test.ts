@@ -3,6 +3,7 @@ import { buildModel } from '../../src/model/build-model.ts';
 import { interpolateOverLog } from '../../src/model/interpolate.ts';
 import { DEFAULT_MODEL_OPTIONS, type ModelOptions } from '../../src/model/model-options.ts';
 import { InputError } from '../../src/quantity/input-fault.ts';
+import { placeText } from '../../src/quantity/place.ts';
 import type { Reference } from '../../src/readings/references.ts';
 import { pairsOf, type TakeLine, takeSetOf } from '../take-set-of.ts';
 
@@ -12,6 +13,7 @@ const certificate = (unit: string, more: Partial<Reference> = {}): Reference => 
   unit,
   mount: '',
   role: 'both',
+  place: { file: 'refs.csv', line: 3 },
   frequency: Float64Array.of(100, 10_000),
   level: Float64Array.of(-10, -20),
   uncertainty: Float64Array.of(0.2, 0.4),
@@ -29,7 +31,8 @@ function fault(references: readonly Reference[], options: Partial<ModelOptions>,
   try {
     build(references, options, lines);
   } catch (error) {
-    if (error instanceof InputError) return error.faults.map(({ found }) => found).join('\n');
+    if (error instanceof InputError)
+      return error.faults.map(({ place, found }) => `${placeText(place)}: ${found}`).join('\n');
     throw error;
   }
   return '';
@@ -70,12 +73,14 @@ describe('certificates', () => {
     ];
     expect(known([certificate('A', { mount: 'clamped' })], RECIPROCAL, lines)).toEqual(['A@clamped']);
     expect(known([certificate('A')], RECIPROCAL, lines.slice(0, 1))).toEqual(['A@bare']);
-    expect(fault([certificate('A')], RECIPROCAL, lines)).toContain('A without a mount');
+    expect(fault([certificate('A')], RECIPROCAL, lines)).toContain(
+      'refs.csv:3 mount: a reference for A without a mount',
+    );
     expect(fault([certificate('A', { mount: 'backed' })], RECIPROCAL, lines)).toContain('A mounted backed');
   });
 
   it('two for one response are a fault, also where look-alikes have it together', () => {
-    expect(fault([certificate('A'), certificate('A')], RECIPROCAL)).toContain('second certificate');
+    expect(fault([certificate('A'), certificate('A')], RECIPROCAL)).toContain('refs.csv:3 unit: a second certificate');
     const twins = { ...RECIPROCAL, lookalikes: [['A', 'C']] };
     expect(fault([certificate('A'), certificate('C')], twins)).toContain('second certificate for the response of C');
     expect(known([certificate('C')], twins)).toEqual(['A = C']);
@@ -85,9 +90,9 @@ describe('certificates', () => {
     const elsewhere = certificate('A', { frequency: Float64Array.of(1, 2) });
     const message = fault([certificate('X'), elsewhere, certificate('B', { role: 'emit' })], RECIPROCAL);
     expect(message.split('\n')).toHaveLength(3);
-    expect(message).toContain('the unit X, which no take names');
-    expect(message).toContain('reaches none of the frequencies');
-    expect(message).toContain('role emit with the reciprocal model');
+    expect(message).toContain('refs.csv:3 unit: the unit X, which no take names');
+    expect(message).toMatch(/^refs\.csv:3 frequency_hz: .*reaches none of the frequencies/m);
+    expect(message).toMatch(/^refs\.csv:3 role: .*role emit with the reciprocal model/m);
   });
 
   it('without a role, or with a role that the unit never has, are faults in the directional model', () => {

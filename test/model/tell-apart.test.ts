@@ -92,6 +92,7 @@ describe('what can be told apart, reciprocal', () => {
       unit: 'A',
       mount: '',
       role: 'both' as const,
+      place: { file: 'refs.csv', line: 2 },
       frequency: Float64Array.of(1, 2),
       level: Float64Array.of(0, 0),
       uncertainty: Float64Array.of(0.1, 0.1),
@@ -168,6 +169,7 @@ describe('what can be told apart over several paths', () => {
   it('a known path leaves nothing to convention', () => {
     const known = {
       path: 'p',
+      place: { file: 'paths.csv', line: 2 },
       frequency: Float64Array.of(1000),
       level: Float64Array.of(-3),
       uncertainty: Float64Array.of(0.2),
@@ -180,6 +182,7 @@ describe('what can be told apart over several paths', () => {
   it('a reading whose exact path is unknown at its frequency does not count', () => {
     const exact = {
       path: 'p',
+      place: { file: 'paths.csv', line: 2 },
       frequency: Float64Array.of(1, 2),
       level: Float64Array.of(-3, -3),
       uncertainty: Float64Array.of(NONE, NONE),

@@ -23,6 +23,7 @@ const knownBench = fc
   })
   .map(({ bench: { set, options }, certified, level, u, path }) => {
     const table = {
+      place: { file: 'table.csv', line: 2 },
       frequency: Float64Array.of(1000, 1700),
       level: Float64Array.of(level, level + 2),
       uncertainty: Float64Array.of(u, 2 * u),
@@ -101,6 +102,10 @@ describe('known links against dense QR of the whole system', () => {
             for (const a of told) {
               expect(Math.abs(solution.estimates[f * n + a]! - whole.coefficients[f * n + a]!)).toBeLessThan(
                 TOLERANCE * scale,
+              );
+              const variance = whole.covarianceFactor[(f * n + a) * whole.columns + f * n + a]!;
+              expect(Math.abs(solution.uncertainty[f * n + a]! ** 2 - variance)).toBeLessThan(
+                TOLERANCE * Math.max(1, variance),
               );
               for (const b of told) {
                 const expected = whole.covarianceFactor[(f * n + a) * whole.columns + f * n + b]!;

@@ -64,6 +64,40 @@ describe('numbers', () => {
   });
 });
 
+describe('a comma before exactly three digits', () => {
+  test.each(['1,000', '12,500', '-999,125', ' \u22121,000 '])(
+    '%s is no number while nothing tells what it is',
+    (text) => {
+      const number = numberReader(undefined);
+      expect(number.read(text)).toBeNaN();
+      expect(number.whyNot(text)).toMatch(/may be a decimal comma or group thousands/);
+      expect([number.read('2,5'), number.read(text)]).toEqual([2.5, numberReader(',').read(text)]);
+      expect(numberReader(',').read(text)).not.toBeNaN();
+    },
+  );
+
+  test.each([
+    ['0,125', 0.125],
+    ['1234,567', 1234.567],
+    ['1,0000', 1],
+    ['1,500e3', 1500],
+    [',250', 0.25],
+  ])('%s can only be a decimal comma', (text, value) => {
+    expect(numberReader(undefined).read(text)).toBe(value);
+  });
+
+  test('decides nothing in a column of frequencies, and for the decimal comma in one of dB', () => {
+    const rows = [
+      ['1,000', '-41,250'],
+      ['2,000', '-40,125'],
+    ];
+    expect(decimalMarkOf(rows, { numeric: [0, 1], decibels: [1] })).toEqual({ mark: ',', isAmbiguous: false });
+    expect(decimalMarkOf(rows, { numeric: [0, 1], decibels: [] })).toEqual({ mark: undefined, isAmbiguous: true });
+    const mixed = [...rows, ['3,000', '-40.5']];
+    expect(decimalMarkOf(mixed, { numeric: [0, 1], decibels: [] })).toEqual({ mark: '.', isAmbiguous: false });
+  });
+});
+
 describe('decimal mark', () => {
   test('the mark that most numbers have wins, in the columns of numbers only', () => {
     const rows = [
@@ -71,8 +105,9 @@ describe('decimal mark', () => {
       ['1.2', '200', '-3.5'],
       ['1.3', '300', '-4,5'],
     ];
-    expect(decimalMarkOf(rows, [1, 2])).toBe(',');
-    expect(decimalMarkOf(rows, [0, 1, 2])).toBe('.');
-    expect(decimalMarkOf(rows, [1])).toBeUndefined();
+    const mark = (...numeric: number[]) => decimalMarkOf(rows, { numeric, decibels: [] });
+    expect(mark(1, 2)).toEqual({ mark: ',', isAmbiguous: false });
+    expect(mark(0, 1, 2)).toEqual({ mark: '.', isAmbiguous: false });
+    expect(mark(1)).toEqual({ mark: undefined, isAmbiguous: false });
   });
 });

@@ -81,6 +81,10 @@ describe('long layout', () => {
     ['NaN for a level', 'A,B,2000,NaN', 'level_db', 'NaN', /not a finite number/],
     ['infinity for a level', 'A,B,2000,-inf', 'level_db', '-inf', /not a finite number/],
     ['a decimal comma among points', 'A,B,2000,"1,5"', 'level_db', '1,5', /decimal comma/],
+    ['a level beyond anything physical', 'A,B,2000,1e300', 'level_db', '1e300', /1000 dB either way/],
+    ['a level just beyond', 'A,B,2000,-1000.5', 'level_db', '-1000.5', /1000 dB either way/],
+    ['a frequency near 0', 'A,B,1e-300,-3', 'frequency_hz', '1e-300', /from 0\.000001 Hz/],
+    ['a frequency beyond anything physical', 'A,B,1e300,-3', 'frequency_hz', '1e300', /to 1000000000000000 Hz/],
     ['a frequency of 0', 'A,B,0,-3', 'frequency_hz', '0', /above 0/],
     ['a negative frequency', 'A,B,-5,-3', 'frequency_hz', '-5', /above 0/],
     ['text for a frequency', 'A,B,high,-3', 'frequency_hz', 'high', /not a finite number/],
@@ -102,7 +106,12 @@ describe('long layout', () => {
     ['u_db', '0', /above 0/],
     ['u_db', '-0.1', /above 0/],
     ['u_db', 'small', /not a finite number/],
+    ['u_db', '1e-300', /from 0\.000001 dB to 1000 dB/],
+    ['u_db', '1e300', /from 0\.000001 dB to 1000 dB/],
     ['averages', '0', /1 or more/],
+    ['averages', '1e300', /not be above 1000000000/],
+    ['noise_db', '-1e300', /1000 dB either way/],
+    ['gain_db', '1e300', /1000 dB either way/],
     ['coherence', '1.2', /above 1/],
     ['coherence', '0', /above 0/],
     ['noise_db', 'low', /not a finite number/],
@@ -113,6 +122,72 @@ describe('long layout', () => {
     expect(readings.unused).toEqual([
       { file: 'pairs.csv', line: 3, column, value, reason: expect.stringMatching(reason) },
     ]);
+  });
+
+  test('ratios beyond anything physical are kept with their reason', async () => {
+    const readings = await read('emitter,receiver,frequency_hz,ratio\nA,B,1,1e50\nA,B,2,1e51\nA,B,3,1e-300\n');
+    expect([...readings.level]).toEqual([1000]);
+    expect(readings.unused.map(({ line, value, reason }) => [line, value, reason])).toEqual([
+      [3, '1e51', 'no amplitude ratio can lie beyond 1000 dB either way'],
+      [4, '1e-300', 'no amplitude ratio can lie beyond 1000 dB either way'],
+    ]);
+  });
+
+  test('a frequency that overflows in its own unit is no infinity', async () => {
+    const readings = await read('emitter,receiver,frequency_mhz,level_db\nA,B,1e305,-3\nA,B,1,-3\n');
+    expect([...readings.frequency]).toEqual([1e6]);
+    expect(readings.unused.map(({ line, value }) => [line, value])).toEqual([[2, '1e305']]);
+  });
+
+  test('a formula that makes an absurd level takes its row out', async () => {
+    const readings = await read(
+      'emitter,receiver,frequency_hz,x,noise_db\nA,B,1,2,\nA,B,2,1e300,\nA,B,3,-3,-900\n',
+      'x*3',
+    );
+    expect([...readings.level]).toEqual([6, -9]);
+    expect(readings.unused).toEqual([
+      {
+        file: 'pairs.csv',
+        line: 3,
+        column: '',
+        value: '3e+300',
+        reason: 'the formula makes this of the row: no level can lie beyond 1000 dB either way',
+      },
+    ]);
+  });
+
+  test('a formula that makes an absurd noise takes its row out', async () => {
+    const readings = await read(
+      'emitter,receiver,frequency_hz,level_db,noise_db\nA,B,1,2,5\nA,B,2,-3,-900\n',
+      'level_db*3',
+    );
+    expect([...readings.level]).toEqual([6]);
+    expect(readings.unused.map(({ line, value }) => [line, value])).toEqual([[3, '-2700']]);
+  });
+
+  test('a comma before three digits is refused where nothing else tells what it is', async () => {
+    const text = `${HEADER}\nA,B,"1,000",-3\nA,B,"2,000",-4\n`;
+    const [fault] = await faults(text);
+    expect(fault!.place).toEqual({ file: 'pairs.csv', line: 2, column: 'frequency_hz' });
+    expect(fault!.found).toMatch(/`1,000`, a comma before three digits.*2 of 2 places/);
+    const whole = await read(`${text}A,B,3000,-5\n`);
+    expect([...whole.frequency]).toEqual([3000]);
+    expect(whole.unused.map(({ line }) => line)).toEqual([2, 3]);
+  });
+
+  test('a level with a decimal comma tells what the commas of the frequencies are', async () => {
+    const readings = await read(
+      'emitter;receiver;frequency_khz;level_db\nA;B;1,000;-3\nA;B;2,125;-4\nA;B;3,000;-5,125\n',
+    );
+    expect([...readings.frequency]).toEqual([1000, 2125, 3000]);
+    expect([...readings.level]).toEqual([-3, -4, -5.125]);
+  });
+
+  test('a cell far down the file tells as well', async () => {
+    const rows = Array.from({ length: 400 }, (_, i) => `A;B;${100 + i},000;${i === 399 ? '-3,5' : '-3'}\n`).join('');
+    const readings = await read(`emitter;receiver;frequency_khz;level_db\n${rows}`);
+    expect(readings.count).toBe(400);
+    expect(readings.frequency[0]).toBe(100_000);
   });
 
   test('fields that a spreadsheet adds or leaves out behind the last header are no fault', async () => {

@@ -6,14 +6,18 @@ const read = (text: string) => readReferences(memorySource('refs.csv', text));
 
 describe('certificates', () => {
   test('rows of a unit, mount and role belong together, frequencies ascending', async () => {
-    const references = await read(
+    const { references, file, notices } = await read(
       'unit,mount,role,frequency_khz,level_db,u_db\nA,bare,receive,2,-180,0.3\nB,,,1,0,0.5\nA,bare,Receive,1,-181,0.2\nA,,emit,1,120,0.4\n',
     );
+    expect(file).toMatchObject({ name: 'refs.csv', layout: 'references', rows: 4 });
+    expect(file.sha256).toMatch(/^[0-9a-f]{64}$/);
+    expect(notices).toEqual([]);
     expect(references).toEqual([
       {
         unit: 'A',
         mount: 'bare',
         role: 'receive',
+        place: { file: 'refs.csv', line: 2 },
         frequency: Float64Array.of(1000, 2000),
         level: Float64Array.of(-181, -180),
         uncertainty: Float64Array.of(0.2, 0.3),
@@ -22,6 +26,7 @@ describe('certificates', () => {
         unit: 'B',
         mount: '',
         role: 'both',
+        place: { file: 'refs.csv', line: 3 },
         frequency: Float64Array.of(1000),
         level: Float64Array.of(0),
         uncertainty: Float64Array.of(0.5),
@@ -30,6 +35,7 @@ describe('certificates', () => {
         unit: 'A',
         mount: '',
         role: 'emit',
+        place: { file: 'refs.csv', line: 5 },
         frequency: Float64Array.of(1000),
         level: Float64Array.of(120),
         uncertainty: Float64Array.of(0.4),
@@ -38,7 +44,9 @@ describe('certificates', () => {
   });
 
   test('an expanded uncertainty is divided by its own k, row by row', async () => {
-    const [reference] = await read(
+    const {
+      references: [reference],
+    } = await read(
       'unit;frequency_hz;level_db;expanded_db;k;u_db\nA;1000;-1,5;0,4;2;\nA;2000;-2,5;0,6;3;\nA;3000;-3,5;;;0,1\n',
     );
     expect([...reference!.uncertainty]).toEqual([0.2, 0.6 / 3, 0.1]);
@@ -51,6 +59,11 @@ describe('certificates', () => {
     ['no uncertainty', 'A,emit,1000,1,,,', 'u_db', /no uncertainty/],
     ['two uncertainties', 'A,emit,1000,1,0.2,0.4,2', 'expanded_db', /a standard and an expanded/],
     ['u of 0', 'A,emit,1000,1,0,,', 'u_db', /`0`/],
+    ['a tiny u', 'A,emit,1000,1,1e-300,,', 'u_db', /`1e-300`.*0\.000001/],
+    ['a huge u', 'A,emit,1000,1,,1e300,2', 'expanded_db', /`1e300`.*1000 dB/],
+    ['a huge k', 'A,emit,1000,1,,0.1,1e300', 'expanded_db', /0\.000001/],
+    ['a huge level', 'A,emit,1000,1e300,0.2,,', 'level_db', /1000 dB either way/],
+    ['a huge frequency', 'A,emit,1e300,1,0.2,,', 'frequency_hz', /Hz/],
     ['a negative u', 'A,emit,1000,1,-1,,', 'u_db', /`-1`/],
     ['a negative expanded_db', 'A,emit,1000,1,,-1,2', 'expanded_db', /`-1`/],
     ['k of 0', 'A,emit,1000,1,,1,0', 'k', /`0`/],
@@ -69,6 +82,14 @@ describe('certificates', () => {
     );
     expect(fault!.found).toMatch(words);
     expect(fault!.remedy).not.toBe('');
+  });
+
+  test('an unknown column and an assumed unit are told', async () => {
+    const { notices } = await read('unit,frequency,level_db,u_db,laboratory\nA,1000,1,0.2,north\n');
+    expect(notices).toEqual([
+      'refs.csv: the column `frequency` names no unit; its numbers are taken as Hz.',
+      'refs.csv: the column `laboratory` is not known here and is kept out.',
+    ]);
   });
 
   test('all faults of a certificate are told at once', async () => {

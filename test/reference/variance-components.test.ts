@@ -79,6 +79,9 @@ describe('dyestuff, six batches of five', () => {
     expectClose(fit.coefficients[0]![0]!, 1527.5, relative);
     expectClose(Math.sqrt(fit.covariance[0]!), 19.383412, relative);
     expectClose(fit.criterion, 319.654277, 1e-8);
+    // Closed form for balanced groups: √(2/24) × within, √(2 (MS²/5 + within²/24)) / 5 with MS = 11271.5.
+    expectClose(fit.standardErrors[1]!, Math.sqrt(2 / 24) * 2451.25, relative);
+    expectClose(fit.standardErrors[0]!, Math.sqrt(2 * (11271.5 ** 2 / 5 + 2451.25 ** 2 / 24)) / 5, relative);
     [-17.60685, 0.39126, 28.56223, -23.08454, 56.73319, -44.99529].forEach((effect, k) => {
       // Five decimals are given.
       expect(Math.abs(fit.predictions[0]![0]![k]! - effect)).toBeLessThan(1e-5);

@@ -30,16 +30,19 @@ export async function resultOf(example: Example): Promise<Result> {
   const model = buildModel(set, { ...DEFAULT_MODEL_OPTIONS, ...example.options });
   const coverage = 0.95;
   const risk = 0.05;
+  const tolerance = 1;
   const settled = await settle(set, model, { givenUncertainty: example.u, risk });
   return {
     version: '1.2.3',
     settings: { files: ['bench.csv'], u: example.u ?? null },
     coverage,
+    risk,
+    tolerance,
     input: inputOf(example),
     set,
     model,
     solution: settled.solution,
-    examination: examine(set, model, settled, { coverage, risk, tolerance: 1 }),
+    examination: examine(set, model, settled, { coverage, risk, tolerance }),
   };
 }
 

@@ -71,6 +71,7 @@ describe('residuals.csv, takes.csv and pairs.csv', () => {
   test('a reading over a path whose level is not known at its frequency keeps its row, with its level only', async () => {
     const path = {
       path: 'block',
+      place: { file: 'paths.csv', line: 2 },
       frequency: Float64Array.of(900, 1100),
       level: Float64Array.of(1, 1),
       uncertainty: Float64Array.of(Number.NaN, Number.NaN),

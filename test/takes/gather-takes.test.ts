@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { hertz } from '../../src/quantity/frequency.ts';
 import { InputError } from '../../src/quantity/input-fault.ts';
+import type { Readings } from '../../src/readings/readings.ts';
 import { gatherTakes } from '../../src/takes/gather-takes.ts';
 import type { Grid } from '../../src/takes/take-set.ts';
 import { readingsMade, type TakeRows } from './readings-made.ts';
@@ -121,6 +122,31 @@ describe('a chosen band', () => {
     const set = gather([{ rows }, { receiver: 'C', rows: [[9000, -1]] }], AS_MEASURED, [1000, 4000]);
     expect(set.takes.map((take) => take.receiver)).toEqual(['B', 'C']);
     expect([...set.levels.slice(4)].every(Number.isNaN)).toBe(true);
+  });
+});
+
+describe('columns that change nothing yet', () => {
+  const given = (more: Partial<Readings>, grid: Grid = AS_MEASURED) => {
+    const rows = Array.from({ length: 100 }, (_, k) => [800 + 5 * k, -20] as const);
+    return gatherTakes({ ...readingsMade([{ rows }]), ...more }, { grid, band: undefined }).notices;
+  };
+  const values = Float64Array.from({ length: 100 }, (_, k) => (k < 30 ? 0.9 : Number.NaN));
+  const saying = [
+    'noise_db is given for 30 of 100 readings and not used: no background noise is taken off a level.',
+    'averages is given for 30 of 100 readings and not used: no uncertainty is made of it.',
+    'coherence is given for 30 of 100 readings and not used: no uncertainty is made of it.',
+  ];
+
+  it('are named in one notice each, on every grid', () => {
+    const all = { noise: values, averages: values, coherence: values };
+    expect(given(all)).toEqual(saying);
+    expect(given(all, { kind: 'octave bands', fraction: 3 })).toEqual(saying);
+    expect(given({ noise: values })).toEqual(saying.slice(0, 1));
+  });
+
+  it('are not named where nothing is in them', () => {
+    expect(given({})).toEqual([]);
+    expect(given({ noise: new Float64Array(100).fill(Number.NaN) })).toEqual([]);
   });
 });
 

@@ -39,6 +39,12 @@ describe('power mean in fractional-octave bands', () => {
     expect(two.uncertainty[0]).toBeCloseTo(0.4, 9);
   });
 
+  it('the stronger of two readings counts by its share of the power', () => {
+    // Powers 1 and 10^0.6; u = 0.4 √(1 + 10^1.2) / (1 + 10^0.6).
+    const { uncertainty } = toOctaveBands(spectrum([892, 1122], [60, 66], 0.4), 3);
+    expect(uncertainty[0]).toBeCloseTo((0.4 * Math.sqrt(1 + 10 ** 1.2)) / (1 + 10 ** 0.6), 12);
+  });
+
   it('has no uncertainty where one reading of the band has none', () => {
     const some = { frequency: [892, 1122], level: [-7, -7], uncertainty: [0.4, Number.NaN] };
     expect(toOctaveBands(some, 3).uncertainty[0]).toBeNaN();
