@@ -66,8 +66,8 @@ export function weighSeats(
   seating: VarianceShares | undefined,
 ): void {
   const { columns, seatMean, seatCount, seatPrecision, seatVariance, chainPrecision, chainMean } = fitted;
-  layout.groups.forEach(({ ends: [a, b] }, chain) => {
-    const variance = seating === undefined ? 0 : seating.shares[a]! + seating.shares[b]!;
+  layout.groups.forEach(({ ends }, chain) => {
+    const variance = seating === undefined ? 0 : seating.shares[ends[0]]! + seating.shares[ends[1]]!;
     seatVariance[chain] = variance;
     const [from, to] = [layout.seatStart[chain]!, layout.seatStart[chain + 1]!];
     let total = 0;
@@ -88,8 +88,8 @@ export function weighSeats(
 
 /** Sets the partner variances, and with them the chains' weights. */
 export function setPartners(layout: ChainLayout, fitted: FittedLevel, partner: VarianceShares | undefined): void {
-  layout.groups.forEach(({ ends: [a, b] }, chain) => {
-    const variance = partner === undefined ? 0 : partner.shares[a]! + partner.shares[b]!;
+  layout.groups.forEach(({ ends }, chain) => {
+    const variance = partner === undefined ? 0 : partner.shares[ends[0]]! + partner.shares[ends[1]]!;
     const precision = fitted.chainPrecision[chain]!;
     fitted.chainPartner[chain] = variance;
     fitted.chainWeight[chain] = precision > 0 ? 1 / (variance + 1 / precision) : 0;
@@ -138,7 +138,8 @@ export function fitChains(layout: ChainLayout, fitted: FittedLevel, n: number): 
   return left;
 }
 
-function inverseNormal(layout: ChainLayout, chainWeight: Float64Array, n: number): Float64Array {
+/** (Σ weight · x xᵀ)⁻¹ over all chains, with a trace of a ridge. */
+export function inverseNormal(layout: ChainLayout, chainWeight: Float64Array, n: number): Float64Array {
   const normal = new Float64Array(n * n);
   layout.groups.forEach(({ links, factors }, chain) => {
     for (let k = 0; k < links.length; k++) {

@@ -98,7 +98,7 @@ export function independentColumns(rows: Float64Array, count: number, columns: n
 // One variance for all repeats: wild groups are left out by the same rule as for shares, with a single member.
 function repeatVariance(layout: ChainLayout, { seatMean, seatCount }: FittedLevel, deviations: Deviations) {
   const { values, columns, active } = deviations;
-  const rows: number[] = [];
+  const rows = new Float64Array(active.length * columns);
   const groups: { square: number; dof: number }[] = [];
   let series = 0;
   layout.takes.forEach((takes, seat) => {
@@ -107,17 +107,17 @@ function repeatVariance(layout: ChainLayout, { seatMean, seatCount }: FittedLeve
     let squares = 0;
     for (const t of takes) {
       if (!active[t]) continue;
-      series++;
       for (let c = 0; c < columns; c++) {
         const rest = values[t * columns + c]! - seatMean[seat * columns + c]!;
-        rows.push(rest);
+        rows[series * columns + c] = rest;
         squares += rest * rest;
       }
+      series++;
     }
     groups.push({ square: squares / (count - 1) / columns, dof: count - 1 });
   });
   if (groups.length === 0) return { variance: 0, dof: 0 };
-  const independent = independentColumns(Float64Array.from(rows), series, columns);
+  const independent = independentColumns(rows, series, columns);
   const contrasts = groups.map(({ square, dof }) => ({ a: 0, b: 0, square, dof: dof * independent, known: 0 }));
   const { shares, used } = robustVarianceShares(contrasts, 1);
   return { variance: 2 * shares[0]!, dof: used.reduce((sum, contrast) => sum + contrast.dof, 0) };
@@ -125,7 +125,7 @@ function repeatVariance(layout: ChainLayout, { seatMean, seatCount }: FittedLeve
 
 function seatingShares(layout: ChainLayout, fitted: FittedLevel, n: number, repeat: number) {
   const { seatMean, seatCount, columns } = fitted;
-  const rows: number[] = [];
+  const rows = new Float64Array(layout.takes.length * columns);
   let series = 0;
   const found: SquaredContrast[] = [];
   layout.groups.forEach(({ ends: [a, b] }, chain) => {
@@ -136,21 +136,21 @@ function seatingShares(layout: ChainLayout, fitted: FittedLevel, n: number, repe
     if (seats.length < 2) return;
     let squares = 0;
     for (const seat of seats) {
-      series++;
       for (let c = 0; c < columns; c++) {
         let mean = 0;
         for (const other of seats) mean += seatMean[other * columns + c]! / seats.length;
         const rest = seatMean[seat * columns + c]! - mean;
-        rows.push(rest);
+        rows[series * columns + c] = rest;
         squares += rest * rest;
       }
+      series++;
     }
     const dof = seats.length - 1;
     const known = seats.reduce((sum, seat) => sum + repeat / seatCount[seat]!, 0) / seats.length;
     found.push({ a, b, square: squares / dof / columns, dof, known });
   });
   if (found.length === 0) return undefined;
-  const independent = independentColumns(Float64Array.from(rows), series, columns);
+  const independent = independentColumns(rows, series, columns);
   return robustVarianceShares(
     found.map((contrast) => ({ ...contrast, dof: contrast.dof * independent })),
     n,

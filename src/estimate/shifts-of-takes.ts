@@ -82,11 +82,11 @@ function dofOfShift(layout: ChainLayout, scatter: LevelScatter, chain: number, s
   const chainSum = (h * left) / spread;
   const partnerPart = chainSum * chainSum * chainPartner[chain]!;
   const repeatPart = Math.max(0, information - seatPart - partnerPart);
-  const [a, b] = layout.groups[chain]!.ends;
+  const { ends } = layout.groups[chain]!;
   const spent =
     spentBy(repeatPart, scatter.repeatDof) +
-    spentBy(seatPart, sumDof(scatter.seating, a, b)) +
-    spentBy(partnerPart, sumDof(scatter.partner, a, b));
+    spentBy(seatPart, sumDof(scatter.seating, ends[0], ends[1])) +
+    spentBy(partnerPart, sumDof(scatter.partner, ends[0], ends[1]));
   return spent > 0 ? (information * information) / spent : Number.POSITIVE_INFINITY;
 }
 
@@ -98,7 +98,8 @@ function spentBy(variance: number, dof: number): number {
 /** Degrees of freedom of the sum of two shares. */
 function sumDof(shares: VarianceShares | undefined, a: number, b: number): number {
   if (shares === undefined) return Number.POSITIVE_INFINITY;
-  const [x, y] = [shares.shares[a]!, shares.shares[b]!];
+  const x = shares.shares[a]!;
+  const y = shares.shares[b]!;
   const spent = x ** 2 / shares.dof[a]! + y ** 2 / shares.dof[b]!;
   return spent > 0 ? (x + y) ** 2 / spent : Number.POSITIVE_INFINITY;
 }

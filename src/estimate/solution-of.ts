@@ -1,6 +1,7 @@
 import type { Patterns } from '../model/find-patterns.ts';
 import type { Model } from '../model/model.ts';
 import type { TakeSet } from '../takes/take-set.ts';
+import type { ScatterOfUses } from './reading-scatter.ts';
 import type { CovarianceBlock, GainEstimate, ReadingUncertainty, Solution } from './solution.ts';
 import { LINK_STATUS } from './solution.ts';
 import type { Sweep } from './sweep.ts';
@@ -20,6 +21,7 @@ export function solutionOf(
   patterns: Patterns,
   swept: Sweep,
   reading: ReadingUncertainty,
+  uses?: ScatterOfUses,
 ): Solution {
   const width = set.frequencies.length;
   const n = model.linksPerFrequency;
@@ -50,7 +52,8 @@ export function solutionOf(
         const gain = common === undefined ? 0 : common[link * n + link]!;
         const ofPriors = scale * fromPriors[link]!;
         uncertainty[cell] = Math.sqrt(Math.max(0, total + gain));
-        dof[cell] = effectiveDof(total + gain, Math.max(0, total - ofPriors), reading.dof[f]!, gain, gainDof);
+        const readingDof = uses === undefined || Number.isNaN(uses.dof[cell]!) ? reading.dof[f]! : uses.dof[cell]!;
+        dof[cell] = effectiveDof(total + gain, Math.max(0, total - ofPriors), readingDof, gain, gainDof);
       }
     });
   }
@@ -65,6 +68,8 @@ export function solutionOf(
     estimates,
     uncertainty,
     dof,
+    reseatUncertainty: otherUse(uncertainty, uses?.seating),
+    partnerUncertainty: otherUse(uncertainty, uses?.partner, uses?.seating),
     status,
     residuals: swept.residuals,
     redundancy: swept.redundancy,
@@ -75,6 +80,14 @@ export function solutionOf(
     worstCondition: Math.max(0, ...swept.blocks.map(({ factored }) => factored.condition)),
     fallbacks: swept.blocks.filter(({ factored }) => factored.poor).length,
   };
+}
+
+/** What a fresh draw of some scatter adds; NaN where the first of them is not known, later ones count where they are known. */
+function otherUse(uncertainty: Float64Array, added: Float64Array | undefined, also?: Float64Array): Float64Array {
+  return uncertainty.map((u, cell) => {
+    const more = also?.[cell] ?? Number.NaN;
+    return Math.sqrt(u * u + (added?.[cell] ?? Number.NaN) + (Number.isNaN(more) ? 0 : more));
+  });
 }
 
 // A frequency at which nothing was measured has its certificate values, and their uncertainty, all the same.

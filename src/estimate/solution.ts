@@ -1,7 +1,7 @@
 import type { Pattern } from '../model/separability.ts';
 
 /** Where the uncertainty of a reading came from. */
-export type UncertaintySource = 'column' | 'repeats' | 'given' | 'residuals' | 'none';
+export type UncertaintySource = 'column' | 'repeats' | 'given' | 'residuals' | 'scatter' | 'none';
 
 /** Scatter found in one third-octave band, with its degrees of freedom. */
 export interface BandScatter {
@@ -20,6 +20,11 @@ export interface ReadingUncertainty {
   readonly statement: string;
   /** Decibels; NaN where there is none. */
   readonly values: Float64Array;
+  /**
+   * What an independent reading of the same weight would have, where readings share a seating or a partner; absent where it
+   * is the same as `values`.
+   */
+  readonly independent?: Float64Array;
   /** Degrees of freedom behind the values at each frequency; Infinity where they count as known, 0 where there is none. */
   readonly dof: Float64Array;
   /** The scatter per band, where the uncertainty was estimated from the readings. */
@@ -64,6 +69,12 @@ export interface Solution {
   readonly uncertainty: Float64Array;
   /** F × L, effective degrees of freedom of that uncertainty (Infinity where all of it counts as known). */
   readonly dof: Float64Array;
+  /**
+   * F × L: the same for two other uses, in dB: the unit seated again, and the unit seated again on another partner. NaN
+   * where the takes do not tell.
+   */
+  readonly reseatUncertainty: Float64Array;
+  readonly partnerUncertainty: Float64Array;
   /** F × L: 0 ok, 1 datum, 2 open. */
   readonly status: Uint8Array;
   /** T × F, reading − fitted, in dB. NaN where not measured. */

@@ -3,6 +3,7 @@ import type { Model } from '../model/model.ts';
 import type { TakeSet } from '../takes/take-set.ts';
 import type { RankRevealingInverse } from './factor-block.ts';
 import { withLeftOutTakes } from './left-out-takes.ts';
+import type { ReadingScatter } from './reading-scatter.ts';
 import { readingUncertainty } from './reading-uncertainty.ts';
 import { residualScatter } from './residual-scatter.ts';
 import type { ReadingUncertainty, Solution } from './solution.ts';
@@ -14,6 +15,8 @@ export interface SolveOptions {
   readonly givenUncertainty?: number | undefined;
   /** Indices of takes to keep out of the solution; their residuals against it are given all the same. */
   readonly without?: ReadonlySet<number> | undefined;
+  /** Scatter of repeats, seatings and partners, where it is known; it then takes the place of the readings' own. */
+  readonly scatter?: ReadingScatter | undefined;
   /** Called with the frequencies done and in all; several passes may be made. */
   readonly onProgress?: (done: number, total: number) => void;
 }
@@ -42,6 +45,11 @@ async function solveAll(set: TakeSet, model: Model, options: SolveOptions): Prom
   const patterns = findPatterns(set, model);
   const known = readingUncertainty(set, options.givenUncertainty);
   const pass = passWith(set, model, patterns, options.onProgress);
+  if (options.scatter !== undefined) {
+    const { total, independent, uses } = options.scatter;
+    const swept = await pass(independent);
+    return solutionOf(set, model, patterns, swept, scatterStatement(set, total, independent), uses);
+  }
   if (known !== undefined) return solutionOf(set, model, patterns, await pass(known.values), known);
 
   let swept = await pass(new Float64Array(set.levels.length).fill(Number.NaN));
@@ -54,6 +62,18 @@ async function solveAll(set: TakeSet, model: Model, options: SolveOptions): Prom
     if (settled) break;
   }
   return solutionOf(set, model, patterns, swept, learnt);
+}
+
+function scatterStatement(set: TakeSet, total: Float64Array, independent: Float64Array): ReadingUncertainty {
+  return {
+    source: 'scatter',
+    statement:
+      'The uncertainty rests on the scatter of repeats, seatings and partners, each found per third-octave band; takes that share a seating or a pair count as correlated.',
+    values: total,
+    independent,
+    dof: new Float64Array(set.frequencies.length).fill(Number.POSITIVE_INFINITY),
+    bands: [],
+  };
 }
 
 function passWith(

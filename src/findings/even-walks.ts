@@ -4,7 +4,7 @@ import type { MergedChain } from './merged-chains.ts';
 
 /** A sum of chains, with alternating signs around an even closed walk, in which all links cancel. */
 export interface EvenWalk {
-  /** Indices of chains in the order of the walk, each once, with the factor it has in the sum (2 where it is walked twice). */
+  /** Indices of chains in the order of the walk, each once, with the factor it has in the sum (±2 where it is walked twice). */
   readonly terms: readonly { readonly chain: number; readonly factor: number }[];
 }
 
@@ -87,7 +87,7 @@ interface Reached extends Step {
 }
 
 /** States of one search where paths or gains are told apart: walks that need more are long, and are left out. */
-const MOST_STATES = 5000;
+const MOST_STATES = 2000;
 
 /**
  * The shortest even closed walk through a chain that never takes it with the other sign, so that it stays in the sum.

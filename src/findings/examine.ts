@@ -216,7 +216,7 @@ function wholeFinding(solution: Solution, isModelFailing: boolean): WholeFinding
     weightedDof += solution.redundancy[cell]!;
   }
   const degreesOfFreedom = solution.degreesOfFreedom.reduce((sum, dof) => sum + dof, 0);
-  const isOwn = readingUncertainty.source === 'residuals' || readingUncertainty.source === 'none';
+  const isOwn = ['residuals', 'scatter', 'none'].includes(readingUncertainty.source);
   return {
     rmsResidual: Math.sqrt(squares / count),
     residualDeviation: degreesOfFreedom > 0 ? Math.sqrt(squares / degreesOfFreedom) : Number.NaN,

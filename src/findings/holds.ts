@@ -5,7 +5,7 @@ import { chiSquareUpperQuantile } from '../numeric/chi-square.ts';
 import { fUpper } from '../numeric/f-distribution.ts';
 import { holmAdjusted } from '../numeric/multiple-testing.ts';
 import { robustVarianceShares, type SquaredContrast } from '../numeric/variance-shares.ts';
-import type { ScreeningLevels } from './screen-takes.ts';
+import type { ScreeningLevels } from './screening-levels.ts';
 
 /** Whether a unit's response depends on what it is mounted against, in one band. */
 export interface HoldFinding {

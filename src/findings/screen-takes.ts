@@ -1,21 +1,11 @@
-import { type ChainLayout, chainLayout } from '../estimate/chain-groups.ts';
-import { type LevelScatter, refitLevel, scatterOfLevel } from '../estimate/scatter-of-level.ts';
-import { shiftsOfTakes } from '../estimate/shifts-of-takes.ts';
 import type { Solution } from '../estimate/solution.ts';
 import type { Model } from '../model/model.ts';
-import { neighbourCorrelation, shareForVariance } from '../numeric/effective-share.ts';
-import { fUpper } from '../numeric/f-distribution.ts';
 import { holmAdjusted } from '../numeric/multiple-testing.ts';
-import { normalUpperQuantile } from '../numeric/normal.ts';
-import { studentTwoSided } from '../numeric/student-t.ts';
 import type { TakeSet } from '../takes/take-set.ts';
-import type { ConstantShift } from './explain-take.ts';
-import { spreadOfSquares } from './spread-of-squares.ts';
-import { bandColumns, takeTemplates } from './take-templates.ts';
+import { estimateAgain, refit, type ScreeningLevels, startingLevels } from './screening-levels.ts';
+import type { SpreadOfSquares } from './spread-of-squares.ts';
+import { constantShifts, type TakeTests, type TestKind, testSome, testTakes } from './take-tests.ts';
 import { EQUALLY_GOOD_RATIO, LARGEST_FLAGGED_PART } from './thresholds.ts';
-
-/** What a take was caught by. */
-export type TestKind = 'constant' | 'slope' | 'band' | 'any';
 
 /** The tests of one take. */
 export interface TakeScreening {
@@ -42,26 +32,6 @@ export interface Screening {
   readonly levels: ScreeningLevels;
 }
 
-/** The levels at which takes are compared, with the takes that stand. */
-export interface ScreeningLevels {
-  readonly layout: ChainLayout;
-  readonly links: number;
-  /** A template each: constant, slope, bands. */
-  readonly templates: readonly {
-    readonly kind: 'constant' | 'slope' | 'band';
-    readonly from: number;
-    readonly to: number;
-    readonly scatter: LevelScatter;
-  }[];
-  /** A third-octave each. */
-  readonly bands: readonly {
-    readonly from: number;
-    readonly to: number;
-    readonly frequencies: readonly number[];
-    readonly scatter: LevelScatter;
-  }[];
-}
-
 export interface ScreenOptions {
   /** Chance that a clean set gets any take flagged. */
   readonly risk: number;
@@ -84,10 +54,12 @@ export function screenTakes(set: TakeSet, model: Model, solution: Solution, { ri
   const setAside: number[] = [];
   const ties = new Map<number, readonly number[]>();
   let isModelFailing = false;
+  let lastSpread: SpreadOfSquares = { dof: 1, excess: 1 };
   for (let round = 0; round < MOST_ROUNDS; round++) {
     let changed = false;
     for (;;) {
-      const tests = testTakes(levels, count);
+      const { tests, spread } = testTakes(levels, count);
+      lastSpread = spread;
       const worst = worstTake(tests, limit);
       if (worst === undefined) break;
       if (setAside.length >= most) {
@@ -98,7 +70,7 @@ export function screenTakes(set: TakeSet, model: Model, solution: Solution, { ri
       const rivals = rivalsOf(tests, worst, limit);
       levels = refit(levels, active);
       if (rivals.length > 0) {
-        const after = testTakes(levels, count, rivals);
+        const after = testSome(levels, count, rivals, spread);
         const tied = rivals.filter((t) => !(after[t]!.p <= limit));
         if (tied.length > 0) ties.set(worst, tied);
       }
@@ -108,7 +80,7 @@ export function screenTakes(set: TakeSet, model: Model, solution: Solution, { ri
     // Offered again, latest first: what stood out only because of a worse take comes back.
     for (const t of [...setAside].reverse()) {
       const offered = active.map((is, other) => is || other === t);
-      const again = testTakes(refit(levels, offered), count, [t])[t]!;
+      const again = testSome(refit(levels, offered), count, [t], lastSpread)[t]!;
       if (again.p <= limit || isModelFailing) continue;
       active = offered;
       setAside.splice(setAside.indexOf(t), 1);
@@ -120,131 +92,6 @@ export function screenTakes(set: TakeSet, model: Model, solution: Solution, { ri
     levels = estimateAgain(levels, active);
   }
   return verdicts(levels, active, setAside, ties, count, { risk, isModelFailing });
-}
-
-function startingLevels(set: TakeSet, model: Model, solution: Solution): ScreeningLevels {
-  const layout = chainLayout(set, model);
-  const links = model.linksPerFrequency;
-  return {
-    layout,
-    links,
-    templates: takeTemplates(set, solution).map(({ kind, from, to, deviations }) => ({
-      kind,
-      from,
-      to,
-      scatter: scatterOfLevel(layout, links, deviations),
-    })),
-    bands: bandColumns(set, solution).map(({ from, to, frequencies, deviations }) => ({
-      from,
-      to,
-      frequencies,
-      scatter: scatterOfLevel(layout, links, deviations),
-    })),
-  };
-}
-
-function refit(levels: ScreeningLevels, active: readonly boolean[]): ScreeningLevels {
-  const one = <L extends { readonly scatter: LevelScatter }>(level: L): L => {
-    const present = hasReading(level.scatter);
-    const both = active.map((is, t) => is && present(t));
-    return { ...level, scatter: refitLevel(levels.layout, levels.links, level.scatter, both) };
-  };
-  return { ...levels, templates: levels.templates.map(one), bands: levels.bands.map(one) };
-}
-
-function estimateAgain(levels: ScreeningLevels, active: readonly boolean[]): ScreeningLevels {
-  const one = <L extends { readonly scatter: LevelScatter }>(level: L): L => {
-    const present = hasReading(level.scatter);
-    const deviations = { ...level.scatter.deviations, active: active.map((is, t) => is && present(t)) };
-    return { ...level, scatter: scatterOfLevel(levels.layout, levels.links, deviations) };
-  };
-  return { ...levels, templates: levels.templates.map(one), bands: levels.bands.map(one) };
-}
-
-// A take without readings here has NaN in its row, or never was active.
-function hasReading({ deviations }: LevelScatter): (take: number) => boolean {
-  const { present } = deviations;
-  return (take) => present[take]!;
-}
-
-interface TakeTests {
-  /** Bonferroni over the tests of the take; NaN where nothing checks it. */
-  readonly p: number;
-  readonly test: TestKind;
-  /** Σ of squared standardised deviations that the deciding test rests on: compared between rival takes. */
-  readonly misfit: number;
-}
-
-type Note = (take: number, p: number, test: TestKind, misfit: number) => void;
-
-/** Tests of all takes, or of some. */
-function testTakes(levels: ScreeningLevels, count: number, only?: readonly number[]): TakeTests[] {
-  const nothing: TakeTests = { p: Number.NaN, test: 'constant', misfit: 0 };
-  const tests = new Array<TakeTests>(count).fill(nothing);
-  const number = levels.templates.length + 1;
-  // Below this many standard uncertainties even the normal distribution gives a chance that the correction makes 1.
-  const surelyTame = normalUpperQuantile(0.5 / number);
-  const note: Note = (t, p, test, misfit) => {
-    const entry = tests[t]!;
-    const corrected = Math.min(1, p * number);
-    if (Number.isNaN(entry.p) || corrected < entry.p || (corrected === entry.p && misfit > entry.misfit)) {
-      tests[t] = { p: corrected, test, misfit };
-    }
-  };
-  for (const { kind, scatter } of levels.templates) {
-    if (!scatter.isKnown) continue;
-    const { shift, uncertainty, dof } = shiftsOfTakes(levels.layout, scatter, only);
-    for (let t = 0; t < count; t++) {
-      const w = Math.abs(shift[t]! / uncertainty[t]!);
-      if (!Number.isNaN(w)) note(t, w < surelyTame ? 1 : studentTwoSided(w, dof[t]!), kind, w * w);
-    }
-  }
-  anyDeviation(levels, count, only, note);
-  return tests;
-}
-
-/** Mean square over all frequencies, with as many of them counted independent as the correlation of neighbours leaves. */
-function anyDeviation(levels: ScreeningLevels, count: number, only: readonly number[] | undefined, note: Note): void {
-  const width = levels.bands.reduce((sum, band) => sum + band.frequencies.length, 0);
-  const standardised = new Float64Array(count * width).fill(Number.NaN);
-  const spent = new Float64Array(count);
-  for (const { scatter, frequencies } of levels.bands) {
-    if (!scatter.isKnown) continue;
-    const columns = frequencies.length;
-    const { shift, uncertainty, dof } = shiftsOfTakes(levels.layout, scatter);
-    for (let t = 0; t < count; t++) {
-      if (Number.isNaN(uncertainty[t]!)) continue;
-      for (let c = 0; c < columns; c++) {
-        standardised[t * width + frequencies[c]!] = shift[t * columns + c]! / uncertainty[t]!;
-      }
-      spent[t] = spent[t]! + columns / dof[t]!;
-    }
-  }
-  const share = shareForVariance(neighbourCorrelation(standardised, count, width), width);
-  const found = Array.from({ length: count }, (_, t) => {
-    let known = 0;
-    let squares = 0;
-    for (let f = t * width; f < (t + 1) * width; f++) {
-      const value = standardised[f]!;
-      if (Number.isNaN(value)) continue;
-      known++;
-      squares += value * value;
-    }
-    return { known, square: squares / known };
-  });
-  const spread = spreadOfSquares(
-    found.filter(({ known }) => known > 0).map(({ square }) => square),
-    Math.max(1, width * share),
-  );
-  for (const t of only ?? found.keys()) {
-    const { known, square } = found[t]!;
-    if (known === 0) continue;
-    const independent = Math.max(1, spread.dof * (known / width));
-    // Each band's scatter was estimated apart; the mean of their degrees of freedom stands for all.
-    const dof = spent[t]! > 0 ? known / spent[t]! : Number.POSITIVE_INFINITY;
-    const ratio = square / spread.excess;
-    note(t, ratio < 1 ? 1 : fUpper(ratio, independent, dof), 'any', ratio * independent);
-  }
 }
 
 function worstTake(tests: readonly TakeTests[], limit: number): number | undefined {
@@ -276,7 +123,7 @@ function verdicts(
   count: number,
   { risk, isModelFailing }: { risk: number; isModelFailing: boolean },
 ): Screening {
-  const standing = testTakes(levels, count);
+  const { tests: standing, spread } = testTakes(levels, count);
   const shifts = constantShifts(levels, count);
   const tiedWith = new Map<number, number[]>();
   for (const worst of setAside) {
@@ -286,7 +133,7 @@ function verdicts(
       levels,
       active.map((is, other) => is || other === worst),
     );
-    const tests = testTakes(offered, count, together);
+    const tests = testSome(offered, count, together, spread);
     const constants = constantShifts(offered, count, together);
     for (const t of together) {
       standing[t] = tests[t]!;
@@ -320,12 +167,4 @@ function verdicts(
     };
   });
   return { takes, setAside, isModelFailing, levels };
-}
-
-function constantShifts(levels: ScreeningLevels, count: number, only?: readonly number[]): ConstantShift[] {
-  const constant = levels.templates.find(({ kind }) => kind === 'constant');
-  const nothing = { shift: Number.NaN, uncertainty: Number.NaN, dof: Number.NaN };
-  if (constant === undefined || !constant.scatter.isKnown) return new Array<ConstantShift>(count).fill(nothing);
-  const { shift, uncertainty, dof } = shiftsOfTakes(levels.layout, constant.scatter, only);
-  return Array.from({ length: count }, (_, t) => ({ shift: shift[t]!, uncertainty: uncertainty[t]!, dof: dof[t]! }));
 }

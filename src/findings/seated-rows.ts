@@ -43,14 +43,26 @@ function seatingKey(set: TakeSet, t: number): string {
   return JSON.stringify([take.session, take.path, ...ends.sort()]);
 }
 
-/** Mean over the takes that were measured, in dB; NaN where none was. */
-export function rowLevel(set: TakeSet, model: Model, takes: readonly number[], f: number): number {
-  let [sum, count] = [0, 0];
-  for (const t of takes) {
-    const level = set.levels[t * set.frequencies.length + f]! - (model.chains[t]!.known?.[f] ?? 0);
-    if (Number.isNaN(level)) continue;
-    sum += level;
-    count++;
-  }
-  return sum / count;
+/**
+ * Means of the rows over their takes that were measured, in dB, less what is exactly known of their chains; NaN where none
+ * was. Entry (row, f) at row · frequencies + f.
+ */
+export function rowLevels(set: TakeSet, model: Model, rows: readonly SeatedRow[]): Float64Array {
+  const width = set.frequencies.length;
+  const levels = new Float64Array(rows.length * width);
+  const counts = new Float64Array(width);
+  rows.forEach(({ takes }, r) => {
+    counts.fill(0);
+    for (const t of takes) {
+      const { known } = model.chains[t]!;
+      for (let f = 0; f < width; f++) {
+        const level = set.levels[t * width + f]! - (known === undefined ? 0 : known[f]!);
+        if (Number.isNaN(level)) continue;
+        levels[r * width + f] = levels[r * width + f]! + level;
+        counts[f] = counts[f]! + 1;
+      }
+    }
+    for (let f = 0; f < width; f++) levels[r * width + f] = levels[r * width + f]! / counts[f]!;
+  });
+  return levels;
 }

@@ -1,3 +1,4 @@
+import { readingScatter } from '../estimate/reading-scatter.ts';
 import { type LevelScatter, refitLevel } from '../estimate/scatter-of-level.ts';
 import { shiftsOfTakes } from '../estimate/shifts-of-takes.ts';
 import type { Solution } from '../estimate/solution.ts';
@@ -7,7 +8,8 @@ import { neighbourCorrelation } from '../numeric/effective-share.ts';
 import type { TakeSet } from '../takes/take-set.ts';
 import { explainTake } from './explain-take.ts';
 import type { ExplainedTake } from './explanations.ts';
-import { type Screening, type ScreeningLevels, screenTakes } from './screen-takes.ts';
+import { type Screening, screenTakes } from './screen-takes.ts';
+import type { ScreeningLevels } from './screening-levels.ts';
 
 /** A solution that rests on the takes that agree, and what was found of the others. */
 export interface Settled {
@@ -25,7 +27,8 @@ export interface SettleOptions extends SolveOptions {
 }
 
 /**
- * Solves, screens the takes, and solves again without those that are flagged; then says what each of them reads like.
+ * Solves, screens the takes, and solves again without those that are flagged and with the scatter that was found; then
+ * says what each of them reads like.
  * Tied takes stay in: the data do not tell which of them to leave out. Where the model fails as a whole, nothing is left
  * out.
  */
@@ -35,7 +38,7 @@ export async function settle(set: TakeSet, model: Model, options: SettleOptions)
   const leftOut = new Set(
     screening.isModelFailing ? [] : screening.setAside.filter((t) => screening.takes[t]!.verdict === 'flagged'),
   );
-  const solution = leftOut.size === 0 ? first : await solve(set, model, { ...options, without: leftOut });
+  const solution = await solveAgain(set, model, options, first, screening.levels, leftOut);
   const suspects = screening.takes
     .map(({ verdict }, t) => ({ verdict, t }))
     .filter(({ verdict }) => verdict === 'flagged' || verdict === 'tied')
@@ -49,6 +52,22 @@ export async function settle(set: TakeSet, model: Model, options: SettleOptions)
     return explainTake(set, model, solution, t, { ...deviationOf(levels, set, t, out), correlation });
   });
   return { solution, screening, leftOut, explained };
+}
+
+/** The final solution: without the takes left out, and weighed by the scatter that was found where it can be told apart. */
+async function solveAgain(
+  set: TakeSet,
+  model: Model,
+  options: SettleOptions,
+  first: Solution,
+  { layout, links, bands }: ScreeningLevels,
+  leftOut: ReadonlySet<number>,
+): Promise<Solution> {
+  const width = set.frequencies.length;
+  const levels = set.levels.map((level, cell) => (leftOut.has(Math.floor(cell / width)) ? Number.NaN : level));
+  const scatter = readingScatter({ ...set, levels }, layout, links, bands, first.readingUncertainty);
+  if (scatter === undefined && leftOut.size === 0) return first;
+  return solve(set, model, { ...options, without: leftOut, scatter });
 }
 
 /** The take's deviation from all takes but those in `out`. */

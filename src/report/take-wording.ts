@@ -9,9 +9,6 @@ import { extraTakeText } from './open-wording.ts';
 import type { Result } from './result.ts';
 import { bandText, listText } from './wording.ts';
 
-/** Readings-like named before the rest is only counted. */
-const MOST_READINGS_LIKE = 3;
-
 /** Explanations that the data do not tell from the best one, best first; the best one alone where it stands out. */
 export function likelyExplanations({ ranked }: ExplainedTake): Explanation[] {
   const likely = ranked.filter(({ isEquallyGood }) => isEquallyGood).map(({ explanation }) => explanation);
@@ -23,12 +20,24 @@ export function likelyExplanations({ ranked }: ExplainedTake): Explanation[] {
   return likely;
 }
 
-/** `moved gain, +3.08 dB ± 0.26 dB or …`; empty where the take was not explained. ± is the expanded uncertainty. */
+/** `moved gain, +3.08 dB ± 0.26 dB, or …`; empty where the take was not explained. ± is the expanded uncertainty. */
 export function readsLike({ explained }: TakeFinding, coverage: number): string {
   if (explained === undefined) return '';
-  const texts = likelyExplanations(explained).map((explanation) => explanationText(explanation, coverage));
-  const more = texts.length - MOST_READINGS_LIKE;
-  return [...texts.slice(0, MOST_READINGS_LIKE), ...(more > 0 ? [`${more} more`] : [])].join(', or ');
+  const likely = likelyExplanations(explained);
+  const labels = likely.filter(isLabel).length;
+  const texts = likely.map((explanation) =>
+    isLabel(explanation) && labels > MOST_LABELS
+      ? `another unit's label (${labels} of them fit)`
+      : explanationText(explanation, coverage),
+  );
+  return [...new Set(texts)].join(', or ');
+}
+
+/** Where more labels fit than this, naming them helps nobody. */
+const MOST_LABELS = 2;
+
+function isLabel({ kind }: Explanation): boolean {
+  return kind === 'another label';
 }
 
 function explanationText(explanation: Explanation, coverage: number): string {
@@ -69,14 +78,17 @@ export function adviceText(result: Pick<Result, 'set'>, finding: TakeFinding): s
   if (finding.verdict === 'tied') {
     const ids = [finding.take, ...finding.tiedWith].sort((a, b) => a - b).map((t) => result.set.takes[t]!.id);
     const settles = finding.cure === undefined ? 'Take them again' : `Take ${cureText(finding.cure, take)}`;
-    return `${settles}, which tells whether ${listText(ids).replace(/ and /, ' or ')} is at fault.`;
+    return `${settles}: that tells which of ${listText(ids)} is at fault.`;
   }
   if (finding.verdict !== 'flagged') return '';
   const again = `take ${pairText(take)} again`;
   if (finding.explained === undefined) return `${again[0]!.toUpperCase()}${again.slice(1)}.`;
   const likely = likelyExplanations(finding.explained);
-  const checks = [...new Set(likely.map((explanation) => checkText(explanation, take)))].slice(0, MOST_READINGS_LIKE);
-  return `Check ${checks.join(', then ')}; ${correctionText(likely[0]!)}${again}.`;
+  const isVague = likely.filter(isLabel).length > MOST_LABELS;
+  const checks = likely.map((explanation) =>
+    isVague && isLabel(explanation) ? 'the labels' : checkText(explanation, take),
+  );
+  return `Check ${[...new Set(checks)].join(', then ')}; ${isVague && isLabel(likely[0]!) ? 'correct a wrong one, else ' : correctionText(likely[0]!)}${again}.`;
 }
 
 /** What to look at first, as the object of 'check'. */

@@ -69,8 +69,20 @@ describe('oddloop solve', () => {
     const { input, notices } = JSON.parse(readFileSync(bench.at('result/summary.json'), 'utf8'));
     const sha256 = (text: string) => createHash('sha256').update(text).digest('hex');
     expect(input.files.slice(1)).toEqual([
-      { name: 'refs.csv', layout: 'references', sha256: sha256(tables['refs.csv']), bytes: 63, rows: 1 },
-      { name: 'paths.csv', layout: 'path levels', sha256: sha256(tables['paths.csv']), bytes: 58, rows: 2 },
+      {
+        name: 'refs.csv',
+        layout: 'references',
+        sha256: sha256(tables['refs.csv']),
+        bytes: tables['refs.csv'].length,
+        rows: 1,
+      },
+      {
+        name: 'paths.csv',
+        layout: 'path levels',
+        sha256: sha256(tables['paths.csv']),
+        bytes: tables['paths.csv'].length,
+        rows: 2,
+      },
     ]);
     expect(notices).toContain('refs.csv: the column `laboratory` is not known here and is kept out.');
     expect(notices).toContain('paths.csv: the column `frequency` names no unit; its numbers are taken as Hz.');
@@ -144,12 +156,47 @@ describe('oddloop solve', () => {
     expect(stdout + stderr).not.toContain('\u001B');
   });
 
+  describe('with --strict', () => {
+    /** All pairs of four, taken twice: the noise of 0.1 dB is that of the repeats. */
+    const clean = () => {
+      const [header, ...rows] = pairsCsv(RING_WITH_DIAGONALS).trim().split('\n');
+      return [`${header},repeat`, ...rows.map((row) => `${row},1`), ...rows.map((row) => `${nudged(row)},2`)].join(
+        '\n',
+      );
+    };
+    const nudged = (row: string) => row.replace(/\.0$/, '.2').replace(/\.1$/, '.0');
+
+    it('ends with 0 where nothing is flagged', () => {
+      bench.write('bench.csv', clean());
+      const { status, stdout } = bench.run('solve', 'bench.csv', ...RECIPROCAL, '--strict');
+      expect({ status, said: stdout.includes('No take disagrees with the rest.') }).toEqual({ status: 0, said: true });
+    });
+
+    it('ends with 1 where a take is flagged, with all outputs there; without it, with 0', () => {
+      const demo = readFileSync(new URL('../../data-demo/pairs.csv', import.meta.url), 'utf8');
+      bench.write('bench.csv', demo);
+      expect(bench.run('solve', 'bench.csv', ...RECIPROCAL, '--strict', '--quiet').status).toBe(1);
+      expect(existsSync(bench.at('result/holds.csv'))).toBe(true);
+      expect(bench.run('solve', 'bench.csv', ...RECIPROCAL, '--quiet').status).toBe(0);
+    });
+  });
+
+  it('writes risk and tolerance among the settings, and the verdicts as data', () => {
+    bench.write('bench.csv', pairsCsv(RING_WITH_DIAGONALS));
+    const options = ['--risk', '0.01', '--tolerance', '2', '--u', '0.3'];
+    bench.run('solve', 'bench.csv', ...RECIPROCAL, ...options);
+    const summary = JSON.parse(readFileSync(bench.at('result/summary.json'), 'utf8'));
+    expect(summary.settings).toMatchObject({ risk: 0.01, tolerance: 2 });
+    expect(summary.takes.counts).toMatchObject({ agrees: 6, flagged: 0, tied: 0 });
+    expect(summary.mounting.tolerance_db).toBe(2);
+  });
+
   it('ends with 4 where nothing can be told apart, with the outputs there and a message on stderr', () => {
     bench.write('ring.csv', pairsCsv(RING_WITH_DIAGONALS.slice(0, 4)));
     const { status, stderr } = bench.run('solve', 'ring.csv', ...RECIPROCAL);
     expect(status).toBe(4);
     expect(stderr).toMatch(/^Nothing can be told apart: /);
-    expect(readFileSync(bench.at('result/responses.csv'), 'utf8')).toMatch(/^N01,,both,1000,,,,,,open$/m);
+    expect(readFileSync(bench.at('result/responses.csv'), 'utf8')).toMatch(/^N01,,both,1000,,,,,,open,not testable$/m);
   });
 
   it('ends with 3 and writes nothing where the input cannot be used', () => {

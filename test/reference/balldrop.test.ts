@@ -72,4 +72,20 @@ describe.runIf(found)('balldrop', () => {
     }
     expect(solved.said).toMatch(/incidence_deg/);
   });
+
+  // Residual sds of 6.5 to 7.8 dB (above) against a tolerance of 1 dB.
+  test('the spectra: the additive model is said to fail in every band, before any level', async () => {
+    const solved = await solve('ae_spectra.csv');
+    const text = solved.stdout.replace(/\s+/g, ' ');
+    expect(text).toMatch(/^Read [^.]*300 kHz\. THE ADDITIVE MODEL FAILS in every band /);
+    expect(text).toContain('No level below can be relied on');
+    const { mounting } = JSON.parse(solved.text('summary.json')!);
+    expect(mounting.model_fails).toHaveLength(5);
+    expect(mounting.counts.holds).toBe(0);
+  });
+
+  test('the pulse file, with a sd of 1.13 dB over all 64 units, is not said to fail as a whole', async () => {
+    const solved = await solve('ae_pulse.csv');
+    expect(solved.stdout).not.toContain('ADDITIVE MODEL FAILS');
+  });
 });

@@ -15,6 +15,7 @@ import {
   SHIFTED,
   textOf,
 } from './example-results.ts';
+import { AGREES, FLAGGED, HOLD, judgedResult } from './judged-results.ts';
 
 const EXAMPLES = [ISLANDS, SHIFTED, DIRECTIONAL, FORTY, HOSTILE];
 
@@ -69,6 +70,50 @@ describe('summary.json', () => {
       { name: 'gain', status: 'datum' },
       { name: 'gain x', status: 'datum' },
     ]);
+  });
+
+  test('takes that disagree come with everything that their explanations rest on', async () => {
+    const result = await judgedResult(SHIFTED, [
+      FLAGGED,
+      { ...AGREES, verdict: 'uncheckable', pValue: Number.NaN, cure: { emitter: 'A', receiver: 'E', path: '' } },
+      { ...FLAGGED, verdict: 'tied', isLeftOut: false, tiedWith: [3] },
+      { ...FLAGGED, verdict: 'tied', isLeftOut: false, tiedWith: [2] },
+    ]);
+    const { takes } = JSON.parse(jsonText(summaryRecord(result)));
+    expect(takes).toMatchObject({
+      counts: { agrees: 2, flagged: 1, tied: 2, uncheckable: 1, not_tested: 0 },
+      model_fails: false,
+      left_out: ['T001'],
+      uncheckable: [{ take: 'T002', extra_take: { emitter: 'A', receiver: 'E', path: null } }],
+    });
+    expect(takes.flagged).toMatchObject([
+      {
+        take: 'T001',
+        emitter: 'A',
+        receiver: 'B',
+        file: 'bench.csv',
+        line: 2,
+        p_value: 1e-9,
+        worst: { from_hz: 891, to_hz: 1122, level_db: 3.5 },
+        explanations: [{ kind: 'moved gain', gain_db: 3.08, u_db: 0.12, dof: 'inf', behind: 0, equally_good: true }],
+        reads_like: 'moved gain, +3.08 dB ± 0.24 dB',
+      },
+    ]);
+    expect(takes.tied.map((tied: { tied_with: string[] }) => tied.tied_with)).toEqual([['T004'], ['T003']]);
+  });
+
+  test('where responses do not hold is listed with its figures, and how many hold', async () => {
+    const broken = { ...HOLD, verdict: 'broken', partner: 2.5, low: 2, high: 3.25, pValue: 1e-5 } as const;
+    const result = await judgedResult(SHIFTED, [], { holds: [HOLD, { ...broken, unit: 'B' }] });
+    expect(JSON.parse(jsonText(summaryRecord(result))).mounting).toEqual({
+      tolerance_db: 1,
+      counts: { holds: 1, strained: 0, broken: 1, not_testable: 0 },
+      broken: [
+        { unit: 'B', mount: null, from_hz: 891, to_hz: 1122, partner_db: 2.5, low_db: 2, high_db: 3.25, p_value: 1e-5 },
+      ],
+      strained: [],
+      model_fails: [],
+    });
   });
 
   test('labels come back as they are', async () => {
@@ -150,6 +195,7 @@ test('all outputs of solve are listed under the names of the contract', async ()
     'takes.csv',
     'pairs.csv',
     'residuals.csv',
+    'holds.csv',
     'unused.csv',
     'summary.json',
     'covariance.json',

@@ -1,23 +1,39 @@
 import { parse } from 'csv-parse/sync';
 import { describe, expect, test } from 'vitest';
+import type { PairFinding } from '../../src/findings/examination.ts';
+import type { HoldFinding } from '../../src/findings/holds.ts';
+import { holdsTable } from '../../src/report/holds-table.ts';
 import { pairsTable } from '../../src/report/pairs-table.ts';
 import { residualsTable } from '../../src/report/residuals-table.ts';
 import { responsesTable } from '../../src/report/responses-table.ts';
 import { takesTable } from '../../src/report/takes-table.ts';
 import { unusedTable } from '../../src/report/unused-table.ts';
-import { DIRECTIONAL, FORTY, HOSTILE, HOSTILE_LABELS, ISLANDS, resultOf, SHIFTED, textOf } from './example-results.ts';
+import {
+  DIRECTIONAL,
+  type Example,
+  FORTY,
+  HOSTILE,
+  HOSTILE_LABELS,
+  ISLANDS,
+  resultOf,
+  SHIFTED,
+  textOf,
+} from './example-results.ts';
+import { FLAGGED, HOLD, judgedResult } from './judged-results.ts';
+
+const NONE = Number.NaN;
 
 describe('responses.csv', () => {
   test('a determined unit has level, u, k, U and degrees of freedom; an open one has its status and nothing else', async () => {
     // var(H) = 3/4 u² for three pairs of three units: u = 0.4 √0.75 = 0.346410; k = 1.959964 (normal, 95 %).
     expect(textOf(responsesTable(await resultOf(ISLANDS)))).toBe(
       [
-        'unit,mount,role,frequency_hz,level_db,u_db,k,expanded_db,dof,status',
-        'A,,both,1000,6.000000,0.34641,1.95996,0.678951,inf,ok',
-        'B,,both,1000,4.000000,0.34641,1.95996,0.678951,inf,ok',
-        'C,,both,1000,2.000000,0.34641,1.95996,0.678951,inf,ok',
-        'yonder,,both,1000,,,,,,open',
-        'beyond,,both,1000,,,,,,open',
+        'unit,mount,role,frequency_hz,level_db,u_db,k,expanded_db,dof,status,mounting',
+        'A,,both,1000,6.000000,0.34641,1.95996,0.678951,inf,ok,not testable',
+        'B,,both,1000,4.000000,0.34641,1.95996,0.678951,inf,ok,not testable',
+        'C,,both,1000,2.000000,0.34641,1.95996,0.678951,inf,ok,not testable',
+        'yonder,,both,1000,,,,,,open,not testable',
+        'beyond,,both,1000,,,,,,open,not testable',
         '',
       ].join('\n'),
     );
@@ -26,7 +42,7 @@ describe('responses.csv', () => {
   test('without any uncertainty the cells for it are empty, never 0', async () => {
     const { u: _, ...without } = ISLANDS;
     const lines = textOf(responsesTable(await resultOf(without))).split('\n');
-    expect(lines[1]).toBe('A,,both,1000,6.000000,,,,,ok');
+    expect(lines[1]).toBe('A,,both,1000,6.000000,,,,,ok,not testable');
   });
 
   test('a level that rests on a datum is written with that status, and mounts in their own column', async () => {
@@ -36,7 +52,7 @@ describe('responses.csv', () => {
     });
     const result = await resultOf({ frequencies: [1250.5], lines, options: { model: 'directional' }, u: 1 });
     expect(textOf(responsesTable(result)).split('\n')[1]).toMatch(
-      /^A,bare,emit,1250.5,0.000000,[\d.]+,1.95996,[\d.]+,inf,datum$/,
+      /^A,bare,emit,1250.5,0.000000,[\d.]+,1.95996,[\d.]+,inf,datum,not testable$/,
     );
   });
 
@@ -85,28 +101,105 @@ describe('residuals.csv, takes.csv and pairs.csv', () => {
     expect(text.split('\n')[2]).toBe('T001,A,B,2000,5.000000,,,0.5,,');
   });
 
-  test('a take says its residual, its offset against all others, and its worst third-octave', async () => {
-    const lines = textOf(takesTable(await resultOf(SHIFTED))).split('\n');
+  test('a take that was left out has no redundancy, and its residuals in units of u', async () => {
+    const { solution, ...rest } = await resultOf(SHIFTED);
+    const redundancy = solution.redundancy.map((share, cell) => (cell < 2 ? Number.NaN : share));
+    const lines = textOf(residualsTable({ ...rest, solution: { ...solution, redundancy } })).split('\n');
+    expect(lines[1]).toBe('T001,A,B,1000,6.000000,4.000000,2.000000,0.5,4.0000,');
+    expect(lines[3]).toMatch(/^T002,A,C,1000,.*,0\.333333$/);
+  });
+
+  test('a take says residual, offset, worst band, what could hide, the verdict, what it reads like, and what to do', async () => {
+    const result = await judgedResult(SHIFTED, [FLAGGED, { ...FLAGGED, verdict: 'not tested', explained: undefined }]);
+    const lines = textOf(takesTable(result)).split('\n');
     expect(lines[0]).toBe(
-      'take,file,line,emitter,receiver,session,emitter_mount,receiver_mount,emitter_seating,receiver_seating,repeat,readings,rms_residual_db,offset_db,u_offset_db,worst_from_hz,worst_to_hz,worst_db,redundancy',
+      'take,file,line,emitter,receiver,session,emitter_mount,receiver_mount,emitter_seating,receiver_seating,repeat,readings,rms_residual_db,offset_db,u_offset_db,worst_from_hz,worst_to_hz,worst_db,redundancy,smallest_shift_db,p_value,verdict,reads_like,advice',
     );
-    // Residuals 2 and 0: rms √2. Offset (2 + 0) / (1/3 + 1/4) = 24/7, u = 0.5 / √(7/12).
-    expect(lines[1]).toMatch(
-      /^T001,bench.csv,2,A,B,,,,,,,2,1.414214,3.428571,0.654654,891.250938134,1122.0184543,2.000000,0.291667$/,
+    expect(lines[1]).toBe(
+      'T001,bench.csv,2,A,B,,,,,,,2,3.000000,3.080000,0.12,891,1122,3.500000,,0.5,1e-9,flagged,"moved gain, +3.08 dB ± 0.24 dB","Check the gain settings; if a known gain moved, give it as gain_db, else take A > B again."',
     );
+    expect(lines[2]).toMatch(/^T002,.*,1e-9,,,$/);
   });
 
   test('a pair says the same over its takes, with their number', async () => {
-    const text = textOf(pairsTable(await resultOf(SHIFTED)));
-    expect(text.split('\n').slice(0, 2)).toEqual([
-      'emitter,receiver,takes,rms_residual_db,offset_db,redundancy',
-      'A,B,1,1.414214,3.428571,0.291667',
+    const pairs: PairFinding[] = [
+      {
+        emitter: 'A',
+        receiver: 'B',
+        takes: [0],
+        rmsResidual: 3,
+        offset: 3.08,
+        redundancy: 0.25,
+        pValue: 1e-9,
+        verdict: 'flagged',
+      },
+      {
+        emitter: 'A',
+        receiver: 'C',
+        takes: [1, 2],
+        rmsResidual: 0,
+        offset: NONE,
+        redundancy: NONE,
+        pValue: NONE,
+        verdict: 'not tested',
+      },
+    ];
+    const result = await resultOf(SHIFTED);
+    const text = textOf(pairsTable({ ...result, examination: { ...result.examination, pairs } }));
+    expect(text.trimEnd().split('\n')).toEqual([
+      'emitter,receiver,takes,rms_residual_db,offset_db,redundancy,p_value,verdict',
+      'A,B,1,3.000000,3.080000,0.25,1e-9,flagged',
+      'A,C,2,0.000000,,,,',
     ]);
   });
 });
 
+describe('where responses hold', () => {
+  const holds: HoldFinding[] = [
+    { ...HOLD, unit: 'A', from: 891, to: 1000, verdict: 'broken', partner: 2.5, low: 2, high: 3.25, pValue: 1e-5 },
+    { ...HOLD, unit: 'A', from: 1000, to: 1122 },
+    {
+      ...HOLD,
+      unit: 'B',
+      from: 891,
+      to: 1000,
+      verdict: 'not testable',
+      partner: NONE,
+      low: NONE,
+      high: NONE,
+      pValue: NONE,
+    },
+  ];
+  const held = async (example: Example) => {
+    const result = await resultOf(example);
+    return { ...result, examination: { ...result.examination, holds } };
+  };
+
+  test('holds.csv has a row a unit and band, empty where there is no figure', async () => {
+    expect(textOf(holdsTable(await held(ISLANDS)))).toBe(
+      [
+        'unit,mount,band_from_hz,band_to_hz,partner_db,low_db,high_db,p_value,verdict',
+        'A,,891,1000,2.5,2,3.25,0.00001,broken',
+        'A,,1000,1122,0.1,0,0.4,1,holds',
+        'B,,891,1000,,,,,not testable',
+        '',
+      ].join('\n'),
+    );
+  });
+
+  test('responses.csv has the verdict of the band; an edge belongs to the upper one, and outside all bands the cell is empty', async () => {
+    const lines = ISLANDS.lines.map((line) => ({ ...line, levels: [1, 1, 1] }));
+    const text = textOf(responsesTable(await held({ ...ISLANDS, frequencies: [900, 1000, 1122], lines })));
+    const mounting = text
+      .split('\n')
+      .slice(1, 5)
+      .map((line) => line.split(',').at(-1));
+    expect(mounting).toEqual(['broken', 'holds', '', 'not testable']);
+  });
+});
+
 describe('every table', () => {
-  const all = [responsesTable, takesTable, pairsTable, residualsTable, unusedTable];
+  const all = [responsesTable, takesTable, pairsTable, residualsTable, holdsTable, unusedTable];
 
   test('labels with commas, quotes, line ends, formulas and comment signs come back as they are', async () => {
     const unused = HOSTILE_LABELS.map((value, i) => ({

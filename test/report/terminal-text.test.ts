@@ -57,8 +57,8 @@ describe('terminal summary', () => {
       'No take is spare, so that nothing checks these levels.',
       'A 6.00 0.68 1 · ·',
       'yonder none none · · 1',
-      'half of the path',
       'Open at 1 kHz: yonder and beyond have no level, since no odd loop ties them. Known is the sum yonder + beyond. One take would settle it: yonder > A.',
+      'half of the path',
       'Written to out: responses.csv, takes.csv,',
       'Relative bench results are not an accredited calibration.',
     ];
@@ -71,7 +71,7 @@ describe('terminal summary', () => {
     // Chi-square per degree of freedom 16 (see json-files.test.ts): residuals 4 times as large; with 3 degrees of freedom
     // chance alone makes 1 + 3/√6 = 2.2 of it.
     expect(flat(await solved(SHIFTED))).toContain(
-      'That is 4.0 times what the uncertainties of the readings say (chi-square per degree of freedom 16): they are too small, or some takes disagree.',
+      'That is 4.0 times what the uncertainties of the readings say (chi-square per degree of freedom 16): they are too small, or responses depend on the partner, or some takes disagree.',
     );
     expect(flat(await solved({ ...SHIFTED, u: 2 }))).toContain('The uncertainties of the readings allow for that');
   });
@@ -106,7 +106,7 @@ describe('terminal summary', () => {
   test('a unit with a level that nothing checks is named', async () => {
     const lines = [...SHIFTED.lines, { emitter: 'A', receiver: 'E', levels: [0, 0] }];
     expect(flat(await solved({ ...SHIFTED, lines }))).toContain(
-      'Nothing checks E: every reading of it is needed for its level. A take with a further partner would.',
+      'Nothing checks E: every reading of it is needed for its level. A take with a further partner would, such as B > E.',
     );
   });
 
