@@ -62,14 +62,20 @@ export function solutionOf(
     const redundancy = swept.redundancy[cell]!;
     if (!Number.isNaN(redundancy)) degreesOfFreedom[cell % width] = degreesOfFreedom[cell % width]! + redundancy;
   }
+  const own = { variance: uncertainty.map((u) => u * u), dof };
+  const seating = uses && { variance: uses.seating, dof: uses.seatingDof };
+  const reseat = otherUse(own, seating);
+  const partner = otherUse(own, uses && { variance: uses.partner, dof: uses.partnerDof }, seating);
   return {
     patterns: patterns.patterns,
     patternOf: patterns.patternOf,
     estimates,
     uncertainty,
     dof,
-    reseatUncertainty: otherUse(uncertainty, uses?.seating),
-    partnerUncertainty: otherUse(uncertainty, uses?.partner, uses?.seating),
+    reseatUncertainty: reseat.uncertainty,
+    reseatDof: reseat.dof,
+    partnerUncertainty: partner.uncertainty,
+    partnerDof: partner.dof,
     status,
     residuals: swept.residuals,
     redundancy: swept.redundancy,
@@ -82,12 +88,31 @@ export function solutionOf(
   };
 }
 
-/** What a fresh draw of some scatter adds; NaN where the first of them is not known, later ones count where they are known. */
-function otherUse(uncertainty: Float64Array, added: Float64Array | undefined, also?: Float64Array): Float64Array {
-  return uncertainty.map((u, cell) => {
-    const more = also?.[cell] ?? Number.NaN;
-    return Math.sqrt(u * u + (added?.[cell] ?? Number.NaN) + (Number.isNaN(more) ? 0 : more));
-  });
+interface AddedVariance {
+  readonly variance: Float64Array;
+  readonly dof: Float64Array;
+}
+
+/**
+ * Uncertainty for another use: a fresh draw of some scatter comes on top. NaN where the first of them is not known; a
+ * further one counts where it is known. Degrees of freedom by Welch–Satterthwaite.
+ */
+function otherUse(
+  own: AddedVariance,
+  added: AddedVariance | undefined,
+  also?: AddedVariance,
+): { uncertainty: Float64Array; dof: Float64Array } {
+  const uncertainty = new Float64Array(own.variance.length).fill(Number.NaN);
+  const dof = new Float64Array(own.variance.length).fill(Number.NaN);
+  if (added === undefined) return { uncertainty, dof };
+  for (let cell = 0; cell < uncertainty.length; cell++) {
+    const parts = [own, added, ...(also === undefined || Number.isNaN(also.variance[cell]!) ? [] : [also])];
+    const total = parts.reduce((sum, { variance }) => sum + variance[cell]!, 0);
+    const spent = parts.reduce((sum, part) => sum + part.variance[cell]! ** 2 / part.dof[cell]!, 0);
+    uncertainty[cell] = Math.sqrt(total);
+    dof[cell] = spent > 0 ? total ** 2 / spent : Number.POSITIVE_INFINITY;
+  }
+  return { uncertainty, dof };
 }
 
 // A frequency at which nothing was measured has its certificate values, and their uncertainty, all the same.

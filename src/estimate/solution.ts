@@ -75,6 +75,9 @@ export interface Solution {
    */
   readonly reseatUncertainty: Float64Array;
   readonly partnerUncertainty: Float64Array;
+  /** Their effective degrees of freedom. */
+  readonly reseatDof: Float64Array;
+  readonly partnerDof: Float64Array;
   /** F × L: 0 ok, 1 datum, 2 open. */
   readonly status: Uint8Array;
   /** T × F, reading − fitted, in dB. NaN where not measured. */

@@ -87,7 +87,7 @@ interface Reached extends Step {
 }
 
 /** States of one search where paths or gains are told apart: walks that need more are long, and are left out. */
-const MOST_STATES = 2000;
+const MOST_STATES = 5000;
 
 /**
  * The shortest even closed walk through a chain that never takes it with the other sign, so that it stays in the sum.

@@ -1,6 +1,8 @@
+import type { ScatterStep } from '../estimate/scatter-step.ts';
 import type { LinkStatus } from '../model/separability.ts';
 import type { ExplainedTake } from './explanations.ts';
 import type { HoldFinding } from './holds.ts';
+import type { MountDifference } from './mount-differences.ts';
 
 /** A stretch of frequencies with a mean level in it. */
 export interface BandLevel {
@@ -67,6 +69,9 @@ export interface UnitFinding {
   /** Median standard and expanded uncertainty in dB; NaN where there is none. */
   readonly medianUncertainty: number;
   readonly medianExpanded: number;
+  /** Median expanded uncertainty in dB for the unit seated again, and seated again on another partner; NaN where not known. */
+  readonly medianReseatExpanded: number;
+  readonly medianPartnerExpanded: number;
   /** Number of frequencies with each status. */
   readonly counts: Readonly<Record<LinkStatus, number>>;
   /** True where no reading of this response has redundancy: nothing checks it. */
@@ -137,5 +142,9 @@ export interface Examination {
   readonly units: readonly UnitFinding[];
   readonly open: readonly OpenFinding[];
   readonly holds: readonly HoldFinding[];
+  /** The ladder of scatter, a third-octave band each. */
+  readonly scatter: readonly ScatterStep[];
+  /** Differences between mounts of one unit; empty where no unit has two. */
+  readonly mounts: readonly MountDifference[];
   readonly whole: WholeFinding;
 }

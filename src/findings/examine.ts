@@ -1,3 +1,4 @@
+import { scatterLadder } from '../estimate/scatter-ladder.ts';
 import { LINK_STATUS, type Solution } from '../estimate/solution.ts';
 import { type ThirdOctaves, thirdOctaves } from '../estimate/third-octaves.ts';
 import type { Model } from '../model/model.ts';
@@ -16,6 +17,7 @@ import type {
   WholeFinding,
 } from './examination.ts';
 import { holdFindings } from './holds.ts';
+import { mountDifferences } from './mount-differences.ts';
 import { openFindings } from './open-findings.ts';
 import type { Settled } from './settle.ts';
 import { DETECTION_POWER, DETECTION_RISK } from './thresholds.ts';
@@ -41,6 +43,8 @@ export function examine(set: TakeSet, model: Model, settled: Settled, options: E
     units: model.responses.map((_, response) => unitFinding(set, model, solution, response, factorOf)),
     open: [...openFindings(set, model, solution), ...gainFindings(model, solution)],
     holds: holdFindings(model, screening.levels, options),
+    mounts: mountDifferences(set, model, solution, factorOf),
+    scatter: scatterLadder(set, model, solution, { ...options, exclude: settled.leftOut }),
     whole: wholeFinding(solution, screening.isModelFailing),
   };
 }
@@ -159,11 +163,19 @@ function unitFinding(
     uncertainties.push(u);
     expanded.push(u * factorOf(solution.dof[cell]!));
   }
+  // Typical u times the factor for the typical degrees of freedom: a factor at each frequency would cost more than it tells.
+  const typicalOver = (uncertainty: Float64Array, dof: Float64Array) => {
+    const cells = [...set.frequencies.keys()].map((f) => f * n + link).filter((cell) => uncertainty[cell]! >= 0);
+    if (cells.length === 0) return Number.NaN;
+    return median(cells.map((cell) => uncertainty[cell]!)) * factorOf(median(cells.map((cell) => dof[cell]!)));
+  };
   return {
     response,
     medianLevel: median(levels),
     medianUncertainty: median(uncertainties),
     medianExpanded: median(expanded),
+    medianReseatExpanded: typicalOver(solution.reseatUncertainty, solution.reseatDof),
+    medianPartnerExpanded: typicalOver(solution.partnerUncertainty, solution.partnerDof),
     counts,
     unchecked: isUnchecked(set, model, solution, link),
   };

@@ -48,6 +48,8 @@ export function explainTake(
     candidates.push({ explanation, criterion: criterionOf(fit.misfit, used.length, parameters), curve: predicted });
   };
 
+  // Known over all frequencies together only: nothing can be said of its shape.
+  if (used.length === 0) return { take, ranked: asConstant(deviation.constant, width), deviation: shift, uncertainty };
   const nothing = fitShape(curve, []);
   add({ kind: 'scatter', factor: Math.sqrt(nothing.misfit / used.length) }, nothing, 0, new Float64Array(width));
   const one = new Float64Array(width).fill(1);
@@ -82,6 +84,13 @@ export function explainTake(
   return { take, ranked: rank(candidates), deviation: shift, uncertainty };
 }
 
+function asConstant(constant: ConstantShift | undefined, width: number): RankedExplanation[] {
+  if (constant === undefined || Number.isNaN(constant.shift)) return [];
+  const { shift, uncertainty, dof } = constant;
+  const explanation: Explanation = { kind: 'moved gain', shift, uncertainty, dof };
+  return [{ explanation, behind: 0, isEquallyGood: true, curve: new Float64Array(width).fill(shift) }];
+}
+
 /** With fewer frequencies a shape along frequency means nothing. Common practice, no source. */
 const FEWEST_FOR_SHAPES = 8;
 
@@ -102,7 +111,7 @@ function movedGain(
   screened: ConstantShift | undefined,
   fit: { coefficients: readonly number[]; uncertainties: readonly number[] },
 ): Explanation {
-  return screened === undefined
+  return screened === undefined || Number.isNaN(screened.shift)
     ? {
         kind: 'moved gain',
         shift: fit.coefficients[0]!,

@@ -20,6 +20,7 @@ export type Explanation =
 /** Explanations of one take, best first. */
 export interface ExplainedTake {
   readonly take: number;
+  /** Empty where the deviation is known at no frequency. */
   readonly ranked: readonly RankedExplanation[];
   /** The deviation that is explained: shift at each frequency with its standard uncertainty in dB, NaN where not known. */
   readonly deviation: Float64Array;

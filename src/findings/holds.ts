@@ -4,7 +4,7 @@ import type { Model } from '../model/model.ts';
 import { chiSquareUpperQuantile } from '../numeric/chi-square.ts';
 import { fUpper } from '../numeric/f-distribution.ts';
 import { holmAdjusted } from '../numeric/multiple-testing.ts';
-import { robustVarianceShares, type SquaredContrast } from '../numeric/variance-shares.ts';
+import type { SquaredContrast } from '../numeric/variance-shares.ts';
 import type { ScreeningLevels } from './screening-levels.ts';
 
 /** Whether a unit's response depends on what it is mounted against, in one band. */
@@ -45,8 +45,8 @@ const FEWEST_DOF = 2;
 export function holdFindings(model: Model, levels: ScreeningLevels, options: HoldOptions): HoldFinding[] {
   const units = unitsOf(model);
   const raw = levels.bands.flatMap(({ from, to, scatter }) => {
-    const band = bandContrasts(levels.layout, scatter);
-    return units.map((unit) => ({ unit, from, to, ...shareOf(unit.links, band, levels.links, options) }));
+    const band = bandContrasts(levels.layout, scatter, levels.links);
+    return units.map((unit) => ({ unit, from, to, ...shareOf(unit.links, band, options) }));
   });
   const adjusted = holmAdjusted(raw.map(({ pValue }) => pValue));
   const findings = raw.map(({ unit: { unit, mount }, from, to, partner, low, high, isTestable }, k): HoldFinding => {
@@ -96,16 +96,23 @@ function unitsOf(model: Model): UnitLinks[] {
 
 interface BandContrasts {
   readonly contrasts: readonly SquaredContrast[];
+  /** Partner share of every link in dB², for the other ends of a unit's chains. */
+  readonly shares: Float64Array;
   /** Degrees of freedom behind the known part. */
   readonly knownDof: number;
   /** Whether scatter below the partner step is known, so that the two can be told apart. */
   readonly isTestable: boolean;
 }
 
-function bandContrasts(layout: ChainLayout, { fitted, repeatDof, seating }: LevelScatter): BandContrasts {
+function bandContrasts(
+  layout: ChainLayout,
+  { fitted, repeatDof, seating, partner }: LevelScatter,
+  n: number,
+): BandContrasts {
   const seatDof = seating === undefined ? Number.POSITIVE_INFINITY : seating.dof.reduce((sum, dof) => sum + dof, 0);
   return {
     contrasts: partnerContrasts(layout, fitted),
+    shares: partner?.shares ?? new Float64Array(n),
     knownDof: seating === undefined ? repeatDof : seatDof,
     isTestable: repeatDof > 0 || seating !== undefined,
   };
@@ -113,16 +120,13 @@ function bandContrasts(layout: ChainLayout, { fitted, repeatDof, seating }: Leve
 
 function shareOf(
   links: ReadonlySet<number>,
-  { contrasts, knownDof, isTestable }: BandContrasts,
-  n: number,
+  { contrasts, shares, knownDof, isTestable }: BandContrasts,
   { coverage }: HoldOptions,
 ) {
   const nothing = { partner: Number.NaN, low: Number.NaN, high: Number.NaN, pValue: Number.NaN, isTestable: false };
   const own = contrasts.filter(({ a, b }) => links.has(a) || links.has(b));
   const dof = own.reduce((sum, contrast) => sum + contrast.dof, 0);
   if (dof < FEWEST_DOF) return nothing;
-  const others = contrasts.filter(({ a, b }) => !(links.has(a) || links.has(b)));
-  const { shares } = others.length === 0 ? { shares: new Float64Array(n) } : robustVarianceShares(others, n);
   // What each chain of the unit would show if the unit's own share were q, beside the share of the other end.
   const rest = own.map(
     ({ a, b, known }) => known + [a, b].reduce((sum, end) => sum + (links.has(end) ? 0 : shares[end]!), 0),
@@ -136,7 +140,7 @@ function shareOf(
   const solveFor = (target: number, scale = 1) =>
     observed * scale <= target ? 0 : root((q) => ratio(q, scale) - target);
   // Less scatter than expected is luck: the upper bound is never below that of just what is expected.
-  const atLeastExpected = Math.max(1, dof / observed);
+  const atLeastExpected = observed > 0 ? Math.max(1, dof / observed) : 1;
   return {
     partner: Math.sqrt(solveFor(dof)),
     low: Math.sqrt(solveFor(chiSquareUpperQuantile(tail, dof))),

@@ -48,7 +48,8 @@ const MOST_ROUNDS = 3;
 export function screenTakes(set: TakeSet, model: Model, solution: Solution, { risk }: ScreenOptions): Screening {
   const count = set.takes.length;
   const limit = risk / Math.max(1, count);
-  const most = Math.floor(LARGEST_FLAGGED_PART * count);
+  // One can always be set aside: a tie of few takes is a tie, not the failure of the model.
+  const most = Math.max(1, Math.floor(LARGEST_FLAGGED_PART * count));
   let levels = startingLevels(set, model, solution);
   let active = new Array<boolean>(count).fill(true);
   const setAside: number[] = [];

@@ -66,10 +66,12 @@ export function coverageFactor(coverage: number, dof: number): number {
 export function coverageFactors(coverage: number): (dof: number) => number {
   const remembered = new Map<number, number>();
   return (dof) => {
-    let factor = remembered.get(dof);
+    // Degrees of freedom that differ in their last digits only are the same: 24 bits change k by less than 1e-7 of it.
+    const rounded = Math.fround(dof);
+    let factor = remembered.get(rounded);
     if (factor === undefined) {
-      factor = coverageFactor(coverage, dof);
-      remembered.set(dof, factor);
+      factor = coverageFactor(coverage, rounded);
+      remembered.set(rounded, factor);
     }
     return factor;
   };

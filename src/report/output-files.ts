@@ -1,10 +1,12 @@
 import { covarianceFile } from './covariance-json.ts';
 import { holdsTable } from './holds-table.ts';
 import { jsonText } from './json-text.ts';
+import { mountsTable } from './mounts-table.ts';
 import { pairsTable } from './pairs-table.ts';
 import { residualsTable } from './residuals-table.ts';
 import { responsesTable } from './responses-table.ts';
 import type { OutputFile, Result } from './result.ts';
+import { scatterTable } from './scatter-table.ts';
 import { summaryRecord } from './summary-json.ts';
 import { takesTable } from './takes-table.ts';
 import { unusedTable } from './unused-table.ts';
@@ -16,7 +18,9 @@ export function outputFiles(result: Result): OutputFile[] {
     takesTable(result),
     pairsTable(result),
     residualsTable(result),
+    scatterTable(result),
     holdsTable(result),
+    ...(result.examination.mounts.length > 0 ? [mountsTable(result)] : []),
     unusedTable(result),
     { name: 'summary.json', chunks: () => [jsonText(summaryRecord(result))] },
     covarianceFile(result),

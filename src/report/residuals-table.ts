@@ -21,7 +21,7 @@ const ROWS_A_CHUNK = 2000;
 
 /**
  * `residuals.csv`: every reading, take by take. A reading that could not be fitted, since the level of its path is not
- * known at its frequency, has its level only. The standardised residual w = residual / (u √redundancy) is absent where
+ * known at its frequency, has its level only. The standardised residual is absent where
  * there is no uncertainty or nothing checks the reading. A take that was left out has no redundancy, and w = residual / u.
  * The labels of a take are quoted once; the numbers need no quotes and are put together here, since millions of rows
  * take the writer several times as long.
@@ -35,6 +35,7 @@ function* residualChunks({ set, solution }: Result): Iterable<string> {
   const width = set.frequencies.length;
   const frequencies = Array.from(set.frequencies, frequencyCell);
   const { residuals, redundancy, readingUncertainty } = solution;
+  const independent = readingUncertainty.independent ?? readingUncertainty.values;
   const uncertaintyText = rememberingLast(figureCell);
   const redundancyText = rememberingLast(figureCell);
   let rows = 0;
@@ -50,7 +51,9 @@ function* residualChunks({ set, solution }: Result): Iterable<string> {
       const share = redundancy[cell]!;
       // A reading that had no part in the fit deviates from it by its own u (and by that of the fit, not counted here).
       const part = Number.isNaN(share) ? 1 : share;
-      const standardised = part > 0 && u > 0 ? residual / (u * Math.sqrt(part)) : Number.NaN;
+      // The fitted value has the variance (1 − redundancy) · (u of an independent reading of the same weight)².
+      const fitted = (1 - part) * (independent[cell]! * independent[cell]!);
+      const standardised = part > 0 && u > 0 ? residual / Math.sqrt(u * u - fitted) : Number.NaN;
       text += `${labels},${frequencies[f]!},${levelCell(level)},${levelCell(level - residual)},${levelCell(residual)},${uncertaintyText(u)},${levelCell(standardised, STANDARDISED_PLACES)},${redundancyText(share)}\n`;
       rows++;
       if (rows % ROWS_A_CHUNK > 0) continue;

@@ -18,6 +18,9 @@ interface ResponseRow {
   readonly uncertainty: number;
   readonly factor: number;
   readonly dof: number;
+  /** Standard uncertainties in dB for the unit seated again, and on another partner. */
+  readonly reseat: number;
+  readonly partner: number;
   /** Whether the unit's response depends on its partner there; empty where it was not judged. */
   readonly mounting: HoldFinding['verdict'] | '';
 }
@@ -32,6 +35,8 @@ const COLUMNS: readonly Column<ResponseRow>[] = [
   { name: 'k', text: (row) => figureCell(row.factor) },
   { name: 'expanded_db', text: (row) => figureCell(row.factor * row.uncertainty) },
   { name: 'dof', text: (row) => figureCell(row.dof) },
+  { name: 'u_reseat_db', text: (row) => figureCell(row.reseat) },
+  { name: 'u_partner_db', text: (row) => figureCell(row.partner) },
   { name: 'status', text: (row) => row.status },
   { name: 'mounting', text: (row) => row.mounting },
 ];
@@ -61,6 +66,8 @@ function* responseRows({ set, model, solution, examination, coverage }: Result):
         uncertainty,
         factor: known ? factorOf(dof) : Number.NaN,
         dof,
+        reseat: isOpen ? Number.NaN : solution.reseatUncertainty[cell]!,
+        partner: isOpen ? Number.NaN : solution.partnerUncertainty[cell]!,
         mounting: own.find(({ from, to }) => frequency >= from && frequency < to)?.verdict ?? '',
       };
     }

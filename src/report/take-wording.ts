@@ -10,7 +10,7 @@ import type { Result } from './result.ts';
 import { bandText, listText } from './wording.ts';
 
 /** Explanations that the data do not tell from the best one, best first; the best one alone where it stands out. */
-export function likelyExplanations({ ranked }: ExplainedTake): Explanation[] {
+function likelyExplanations({ ranked }: ExplainedTake): Explanation[] {
   const likely = ranked.filter(({ isEquallyGood }) => isEquallyGood).map(({ explanation }) => explanation);
   const [slope, gain] = (['slope', 'moved gain'] as const).map((kind) =>
     likely.findIndex((explanation) => explanation.kind === kind),

@@ -59,7 +59,16 @@ function unitTable(result: Result, style: TextStyle): string[] {
   // Where every level stands at every frequency, the verdict has said so.
   const hasCounts = examination.units.some(({ counts }) => counts.datum + counts.open > 0);
   const isTestable = examination.holds.some(({ verdict }) => verdict !== 'not testable');
-  const header = ['unit', 'level, dB', 'U, dB', ...(hasCounts ? ['ok', 'datum', 'open'] : [])];
+  const hasReseat = examination.units.some((unit) => !Number.isNaN(unit.medianReseatExpanded));
+  const hasPartner = examination.units.some((unit) => !Number.isNaN(unit.medianPartnerExpanded));
+  const header = [
+    'unit',
+    'level, dB',
+    'U, dB',
+    ...(hasReseat ? ['reseated'] : []),
+    ...(hasPartner ? ['partner'] : []),
+    ...(hasCounts ? ['ok', 'datum', 'open'] : []),
+  ];
   const rows = examination.units.map((unit): TableRow => {
     const response = model.responses[unit.response]!;
     const { ok, datum, open } = unit.counts;
@@ -69,6 +78,8 @@ function unitTable(result: Result, style: TextStyle): string[] {
       cells: [
         responseName(response),
         ...levelCells(unit),
+        ...(hasReseat ? [uncertaintyCell(unit.medianReseatExpanded)] : []),
+        ...(hasPartner ? [uncertaintyCell(unit.medianPartnerExpanded)] : []),
         ...(hasCounts ? [ok, datum, open].map(count) : []),
         ...(isTestable ? [holdsCell(hold)] : []),
       ],
@@ -77,6 +88,8 @@ function unitTable(result: Result, style: TextStyle): string[] {
   });
   const caption = [
     `level: median over frequency; U: its typical expanded uncertainty (${percentText(coverage)})`,
+    ...(hasReseat ? ['reseated: U for the unit mounted once more'] : []),
+    ...(hasPartner ? ['partner: U for it on another partner'] : []),
     ...(hasCounts ? ['ok, datum, open: number of frequencies'] : []),
     ...(isTestable ? ['holds: the bands where it does not depend on its partner'] : []),
   ];
@@ -90,7 +103,11 @@ function unitTable(result: Result, style: TextStyle): string[] {
 /** A level and its U, both with two digits of U. */
 function levelCells({ medianLevel: level, medianExpanded: expanded }: UnitFinding): [string, string] {
   if (Number.isNaN(level)) return ['none', 'none'];
-  return [roundedText(level, expanded), Number.isNaN(expanded) ? 'none' : roundedText(expanded, expanded)];
+  return [roundedText(level, expanded), uncertaintyCell(expanded)];
+}
+
+function uncertaintyCell(expanded: number): string {
+  return Number.isNaN(expanded) ? 'none' : roundedText(expanded, expanded);
 }
 
 /** What the figures rest on. */

@@ -33,6 +33,7 @@ describe('readRequest', () => {
       settingsFile: undefined,
       out: 'result',
       json: false,
+      strict: false,
       quiet: false,
     });
   });

@@ -54,8 +54,15 @@ function bent(set: TakeSet, change: (level: number, take: number) => number): Be
 }
 
 /** Each reading by its own level, as a sine at a time does: 1 dB at the level that one reading in fifty exceeds. */
-const saturatedReadings = (set: TakeSet) => bent(set, (level) => -loss(level, quantile(set.levels, 0.98)));
-const drownedReadings = (set: TakeSet) => bent(set, (level) => gain(level, quantile(set.levels, 0.02)));
+function saturatedReadings(set: TakeSet): Bent {
+  const knee = quantile(set.levels, 0.98);
+  return bent(set, (level) => -loss(level, knee));
+}
+
+function drownedReadings(set: TakeSet): Bent {
+  const floor = quantile(set.levels, 0.02);
+  return bent(set, (level) => gain(level, floor));
+}
 
 /** Each take as a whole by its power, as a pulse does: 1 dB at the power that one take in ten exceeds. */
 function saturatedTakes(set: TakeSet): Bent {
@@ -63,7 +70,8 @@ function saturatedTakes(set: TakeSet): Bent {
   const powers = set.takes.map((_, t) =>
     decibels(set.levels.subarray(t * width, (t + 1) * width).reduce((sum, level) => sum + power(level) / width, 0)),
   );
-  return bent(set, (_, take) => -loss(powers[take]!, quantile(powers, 0.9)));
+  const knee = quantile(powers, 0.9);
+  return bent(set, (_, take) => -loss(powers[take]!, knee));
 }
 
 const SEEDS = Array.from({ length: 20 }, (_, k) => k + 1);
