@@ -14,17 +14,10 @@ const FREQUENCY_DIGITS = 12;
 export function levelCell(value: number, places: number = LEVEL_PLACES): string {
   if (Number.isNaN(value)) return '';
   if (!Number.isFinite(value)) throw new RangeError(`no text for the level ${value}`);
-  const size = 10 ** places;
-  const scaled = Math.round(Math.abs(value) * size);
-  if (scaled >= LARGEST_FAST) return value.toFixed(places);
-  // Whole and decimal part as integers, three times as fast as toFixed; a value that rounds to 0 has no sign.
-  const whole = Math.floor(scaled / size);
-  const text = `${whole}.${String(size + scaled - whole * size).slice(1)}`;
-  return value < 0 && scaled > 0 ? `-${text}` : text;
+  const text = value.toFixed(places);
+  // A small negative value leaves its sign on a row of zeros.
+  return text.startsWith('-') && Number(text) === 0 ? text.slice(1) : text;
 }
-
-/** Integers up to here, with a digit to spare, are exact. */
-const LARGEST_FAST = 2 ** 52;
 
 /** An uncertainty, a factor, degrees of freedom: six significant digits, trailing zeros left out; `inf` when infinite. */
 export function figureCell(value: number): string {
