@@ -16,7 +16,7 @@ export interface ChainGroup {
  * Groups takes by chain and, within a chain, by seating. Seatings of one chain count as independent of each other, and of
  * those of other chains. Gains shared by all frequencies do not tell chains apart.
  */
-export function chainGroups(set: TakeSet, model: Model): ChainGroup[] {
+function chainGroups(set: TakeSet, model: Model): ChainGroup[] {
   const groups = new Map<string, { chain: number; seatings: Map<string, number[]> }>();
   set.takes.forEach((take, t) => {
     const chain = model.chains[t]!;

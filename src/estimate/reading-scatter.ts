@@ -1,8 +1,9 @@
 import type { TakeSet } from '../takes/take-set.ts';
 import type { ChainLayout } from './chain-groups.ts';
 import { dofOfLinks } from './dof-of-links.ts';
+import { noiseOverRepeats } from './reading-uncertainty.ts';
 import type { LevelScatter } from './scatter-of-level.ts';
-import type { ReadingUncertainty } from './solution.ts';
+import { isGiven, type ReadingUncertainty } from './solution.ts';
 
 /** Scatter of one band, for the frequencies in it. */
 export interface ScatterBand {
@@ -40,7 +41,7 @@ export interface ReadingScatter {
  * partner variance q² it is divided by 1 + q² Σ c.
  * Source: Henderson's equivalence of generalised least squares and mixed-model equations; Searle, Casella & McCulloch,
  * Variance Components, 1992, section 7.1.
- * @param reading uncertainty of one reading by itself; used where it comes from the input's own column.
+ * @param reading uncertainty of one reading by itself; used where it is known before anything is solved.
  * @returns undefined where neither repeats nor seatings tell the scatter apart.
  */
 export function readingScatter(
@@ -95,7 +96,9 @@ function weighChain(
   const width = set.frequencies.length;
   const seatVariance = fitted.seatVariance[chain]!;
   const partnerVariance = fitted.chainPartner[chain]!;
-  const variance = (cell: number) => (reading.source === 'column' ? reading.values[cell]! ** 2 : repeatVariance);
+  const isOwn = isGiven(reading.source);
+  const variance = (cell: number) =>
+    isOwn ? reading.values[cell]! ** 2 : repeatVariance * noiseOverRepeats(set, cell) ** 2;
   const [from, to] = [layout.seatStart[chain]!, layout.seatStart[chain + 1]!];
   let precision = 0;
   const ofSeat: { seat: number; precision: number; weight: number }[] = [];

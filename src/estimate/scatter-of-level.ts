@@ -39,7 +39,7 @@ export interface LevelScatter {
 }
 
 /** Fewer degrees of freedom than this cannot tell a partner scatter from a single wild chain. Common practice, no source. */
-export const FEWEST_PARTNER_DOF = 8;
+const FEWEST_PARTNER_DOF = 8;
 
 /** A redundancy below this is rounding. */
 export const UNCHECKED = 1e-6;
@@ -90,7 +90,7 @@ export function refitLevel(
  * How many of the columns count as independent in a mean square: the columns of a level are neighbours along frequency,
  * and each step of the ladder has a correlation of its own. Repeats are mostly white, what a seating changes is smooth.
  */
-export function independentColumns(rows: Float64Array, count: number, columns: number): number {
+function independentColumns(rows: Float64Array, count: number, columns: number): number {
   if (columns === 1) return 1;
   return columns * shareForVariance(neighbourCorrelation(rows, count, columns), columns);
 }

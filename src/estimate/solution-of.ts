@@ -1,10 +1,19 @@
 import type { Patterns } from '../model/find-patterns.ts';
 import type { Model } from '../model/model.ts';
+import type { SystematicEffect } from '../model/systematic-effects.ts';
 import type { TakeSet } from '../takes/take-set.ts';
 import type { ScatterOfUses } from './reading-scatter.ts';
 import type { CovarianceBlock, GainEstimate, ReadingUncertainty, Solution } from './solution.ts';
 import { LINK_STATUS } from './solution.ts';
 import type { Sweep } from './sweep.ts';
+import {
+  type EffectShifts,
+  reachedAlike,
+  systematicShifts,
+  type VariancePart,
+  variancesOfLines,
+  withEffects,
+} from './systematic-shifts.ts';
 
 /** A variance below this part of the whole is rounding, left by taking the part of the known values away. */
 const NO_PART = 1e-12;
@@ -14,6 +23,12 @@ const MOVES = 1e-7;
 
 const statusCode = (status: (typeof LINK_STATUS)[number]) => LINK_STATUS.indexOf(status);
 
+/** What comes to the uncertainty beside the readings' own. */
+export interface SolutionParts {
+  readonly uses?: ScatterOfUses | undefined;
+  readonly effects?: readonly SystematicEffect[] | undefined;
+}
+
 /** Turns the last pass into the solution: variances split by source, degrees of freedom, and what has no value taken out. */
 export function solutionOf(
   set: TakeSet,
@@ -21,7 +36,7 @@ export function solutionOf(
   patterns: Patterns,
   swept: Sweep,
   reading: ReadingUncertainty,
-  uses?: ScatterOfUses,
+  { uses, effects = [] }: SolutionParts = {},
 ): Solution {
   const width = set.frequencies.length;
   const n = model.linksPerFrequency;
@@ -31,32 +46,42 @@ export function solutionOf(
   const status = new Uint8Array(width * n);
   const gainDof = reading.bands.length === 0 ? Number.POSITIVE_INFINITY : sum(reading.bands.map((band) => band.dof));
   const covariance: CovarianceBlock[] = [];
-  for (const { block, factored } of swept.blocks) {
-    const common = gainPart(factored.coupling, swept.gains.covariance, n, block.system.gains);
+  const shifts = systematicShifts(swept, effects);
+  swept.blocks.forEach(({ block, factored }, b) => {
+    const ofGains = gainPart(factored.coupling, swept.gains.covariance, n, block.system.gains);
     const fromPriors = priorPart(factored.covariance, block.system.priorLinks, block.system.priorWeights, n);
     const linkStatus = linkStatuses(patterns, block.pattern, factored.coupling, swept, n);
-    const scales = Float64Array.from(block.frequencies, (f) =>
-      hasUncertainty(reading, set, f, patterns) ? swept.unitVariance[f]! : Number.NaN,
-    );
-    covariance.push({ frequencies: block.frequencies, scales, matrix: factored.covariance, common });
-    block.frequencies.forEach((f, k) => {
-      for (let link = 0; link < n; link++) {
-        const cell = f * n + link;
-        status[cell] = linkStatus[link]!;
-        if (linkStatus[link] === statusCode('open')) {
-          estimates[cell] = Number.NaN;
-          continue;
+    for (const { frequencies, reaching } of reachedAlike(block.frequencies, shifts, b)) {
+      const scales = Float64Array.from(frequencies, (f) =>
+        hasUncertainty(reading, set, f, patterns) ? swept.unitVariance[f]! : Number.NaN,
+      );
+      const common = withEffects(ofGains, reaching, n);
+      covariance.push({ frequencies, scales, matrix: factored.covariance, common });
+      frequencies.forEach((f, k) => {
+        for (let link = 0; link < n; link++) {
+          const cell = f * n + link;
+          status[cell] = linkStatus[link]!;
+          if (linkStatus[link] === statusCode('open')) {
+            estimates[cell] = Number.NaN;
+            continue;
+          }
+          const scale = scales[k]!;
+          const total = scale * factored.covariance[link * n + link]!;
+          const gain = ofGains === undefined ? 0 : ofGains[link * n + link]!;
+          const systematic = variancesOfLines(reaching, link);
+          const ofPriors = scale * fromPriors[link]!;
+          const whole = total + (common === undefined ? 0 : common[link * n + link]!);
+          uncertainty[cell] = Math.sqrt(Math.max(0, whole));
+          const readingDof = uses === undefined || Number.isNaN(uses.dof[cell]!) ? reading.dof[f]! : uses.dof[cell]!;
+          dof[cell] = effectiveDof(whole, [
+            { variance: Math.max(0, total - ofPriors), dof: readingDof },
+            { variance: gain, dof: gainDof },
+            ...systematic,
+          ]);
         }
-        const scale = scales[k]!;
-        const total = scale * factored.covariance[link * n + link]!;
-        const gain = common === undefined ? 0 : common[link * n + link]!;
-        const ofPriors = scale * fromPriors[link]!;
-        uncertainty[cell] = Math.sqrt(Math.max(0, total + gain));
-        const readingDof = uses === undefined || Number.isNaN(uses.dof[cell]!) ? reading.dof[f]! : uses.dof[cell]!;
-        dof[cell] = effectiveDof(total + gain, Math.max(0, total - ofPriors), readingDof, gain, gainDof);
-      }
-    });
-  }
+      });
+    }
+  });
   const degreesOfFreedom = new Float64Array(width);
   for (let cell = 0; cell < swept.redundancy.length; cell++) {
     const redundancy = swept.redundancy[cell]!;
@@ -81,7 +106,7 @@ export function solutionOf(
     redundancy: swept.redundancy,
     readingUncertainty: reading,
     covariance,
-    gains: gainEstimates(model, swept, reading),
+    gains: gainEstimates(model, swept, reading, shifts),
     degreesOfFreedom,
     worstCondition: Math.max(0, ...swept.blocks.map(({ factored }) => factored.condition)),
     fallbacks: swept.blocks.filter(({ factored }) => factored.poor).length,
@@ -176,24 +201,33 @@ function linkStatuses(
 }
 
 /**
- * Effective degrees of freedom of a variance of which `readings` and `gains` were estimated and the rest is known.
+ * Effective degrees of freedom of a variance of which these parts were estimated and the rest is known.
  * Source: JCGM 100:2008, G.4.1 (Welch–Satterthwaite).
  */
-function effectiveDof(total: number, readings: number, readingsDof: number, gains: number, gainsDof: number): number {
+function effectiveDof(total: number, parts: readonly VariancePart[]): number {
   if (Number.isNaN(total)) return Number.NaN;
-  const spent =
-    (readings > NO_PART * total ? readings ** 2 / readingsDof : 0) + (gains > 0 ? gains ** 2 / gainsDof : 0);
+  let spent = 0;
+  for (const { variance, dof } of parts) if (variance > NO_PART * total) spent += variance ** 2 / dof;
   return spent > 0 ? total ** 2 / spent : Number.POSITIVE_INFINITY;
 }
 
-function gainEstimates(model: Model, swept: Sweep, reading: ReadingUncertainty): GainEstimate[] {
+function gainEstimates(
+  model: Model,
+  swept: Sweep,
+  reading: ReadingUncertainty,
+  effects: readonly EffectShifts[],
+): GainEstimate[] {
   const { values, covariance, pinned } = swept.gains;
-  return Array.from(values, (value, g) => ({
-    link: model.linksPerFrequency + g,
-    value,
-    uncertainty: reading.source === 'none' ? Number.NaN : Math.sqrt(covariance[g * values.length + g]!),
-    status: pinned.includes(g) ? 'datum' : 'ok',
-  }));
+  return Array.from(values, (value, g) => {
+    const systematic = effects.reduce((sum, { effect, gains }) => sum + (effect.line.uncertainty * gains[g]!) ** 2, 0);
+    const variance = covariance[g * values.length + g]! + systematic;
+    return {
+      link: model.linksPerFrequency + g,
+      value,
+      uncertainty: reading.source === 'none' ? Number.NaN : Math.sqrt(variance),
+      status: pinned.includes(g) ? 'datum' : 'ok',
+    };
+  });
 }
 
 function sum(values: readonly number[]): number {

@@ -1,7 +1,12 @@
 import type { Pattern } from '../model/separability.ts';
 
 /** Where the uncertainty of a reading came from. */
-export type UncertaintySource = 'column' | 'repeats' | 'given' | 'residuals' | 'scatter' | 'none';
+export type UncertaintySource = 'column' | 'averages' | 'repeats' | 'given' | 'residuals' | 'scatter' | 'none';
+
+/** Whether every reading has an uncertainty that is known before anything is solved. */
+export function isGiven(source: UncertaintySource): boolean {
+  return source === 'column' || source === 'averages' || source === 'given';
+}
 
 /** Scatter found in one third-octave band, with its degrees of freedom. */
 export interface BandScatter {
@@ -39,7 +44,7 @@ export interface CovarianceBlock {
   readonly scales: Float64Array;
   /** Row-major, linksPerFrequency squared. Rows and columns of open links mean nothing. */
   readonly matrix: Float64Array;
-  /** The part that comes from gains shared by all frequencies, in dB²; absent where there are none. */
+  /** The part that comes from gains shared by all frequencies and from systematic effects, in dB²; absent without them. */
   readonly common: Float64Array | undefined;
 }
 

@@ -1,5 +1,6 @@
 import { findPatterns, type Patterns } from '../model/find-patterns.ts';
 import type { Model } from '../model/model.ts';
+import type { SystematicEffect } from '../model/systematic-effects.ts';
 import type { TakeSet } from '../takes/take-set.ts';
 import type { RankRevealingInverse } from './factor-block.ts';
 import { withLeftOutTakes } from './left-out-takes.ts';
@@ -17,6 +18,8 @@ export interface SolveOptions {
   readonly without?: ReadonlySet<number> | undefined;
   /** Scatter of repeats, seatings and partners, where it is known; it then takes the place of the readings' own. */
   readonly scatter?: ReadingScatter | undefined;
+  /** Systematic effects that the takes do not show; they come to the uncertainty, and leave the estimates alone. */
+  readonly effects?: readonly SystematicEffect[] | undefined;
   /** Called with the frequencies done and in all; several passes may be made. */
   readonly onProgress?: (done: number, total: number) => void;
 }
@@ -42,15 +45,16 @@ export async function solve(set: TakeSet, model: Model, options: SolveOptions = 
 }
 
 async function solveAll(set: TakeSet, model: Model, options: SolveOptions): Promise<Solution> {
+  const { effects } = options;
   const patterns = findPatterns(set, model);
   const known = readingUncertainty(set, options.givenUncertainty);
   const pass = passWith(set, model, patterns, options.onProgress);
   if (options.scatter !== undefined) {
     const { total, independent, uses } = options.scatter;
     const swept = await pass(independent);
-    return solutionOf(set, model, patterns, swept, scatterStatement(set, total, independent), uses);
+    return solutionOf(set, model, patterns, swept, scatterStatement(set, total, independent), { uses, effects });
   }
-  if (known !== undefined) return solutionOf(set, model, patterns, await pass(known.values), known);
+  if (known !== undefined) return solutionOf(set, model, patterns, await pass(known.values), known, { effects });
 
   let swept = await pass(new Float64Array(set.levels.length).fill(Number.NaN));
   let learnt = residualScatter(set, swept);
@@ -61,7 +65,7 @@ async function solveAll(set: TakeSet, model: Model, options: SolveOptions): Prom
     learnt = next;
     if (settled) break;
   }
-  return solutionOf(set, model, patterns, swept, learnt);
+  return solutionOf(set, model, patterns, swept, learnt, { effects });
 }
 
 function scatterStatement(set: TakeSet, total: Float64Array, independent: Float64Array): ReadingUncertainty {

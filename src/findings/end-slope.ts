@@ -23,14 +23,17 @@ export interface EndSlope {
   readonly dof: number;
   /** One-sided: the upper end against compression, the lower end against lifting. Not corrected for the number of tests. */
   readonly pValue: number;
-  /** Nothing is left of it without one of the pairs that speak loudest: one pair that stands off is no question of level. */
-  readonly restsOnOnePair: boolean;
+  /**
+   * The largest p when each of the pairs that speak loudest is left out in turn: one pair that stands off is no question of
+   * level. 1 where nothing would be left to test, or where p itself shows nothing.
+   */
+  readonly pWithoutPair: number;
   /** Takes whose estimated misfit exceeds the scatter of a pair mean in its band, worst first. */
   readonly takes: readonly BentTake[];
 }
 
-/** Without the loudest pair the test need not stand up to the correction for many tests. Common practice, no source: 5 %. */
-const STILL_SHOWN = 0.05;
+/** Above this p no pair is left out, as there is nothing to lose. Common practice, no source: 5 %. */
+const WORTH_A_LOOK = 0.05;
 
 /**
  * Fits one more term to the pair means of some bands, the same for all of them: 0 for all levels but the outermost `part`,
@@ -48,13 +51,13 @@ export function endSlope(bands: readonly PairBand[], end: 'upper' | 'lower', par
   if (begins === undefined || fit === undefined) return { ...UNTESTED, end, part };
   const { slope, uncertainty, dof } = fit;
   const pValue = oneSided(fit, sign);
-  const vanishesWithout = (pair: number) => {
+  const without = (pair: number) => {
     const rest = fitTerm(
       bands.map((band) => withoutPair(band, pair)),
       sign,
       begins,
     );
-    return rest === undefined || !(oneSided(rest, sign) <= STILL_SHOWN);
+    return rest === undefined ? 1 : oneSided(rest, sign);
   };
   return {
     end,
@@ -64,7 +67,7 @@ export function endSlope(bands: readonly PairBand[], end: 'upper' | 'lower', par
     uncertainty,
     dof,
     pValue,
-    restsOnOnePair: pValue <= STILL_SHOWN && fit.loudest.some(vanishesWithout),
+    pWithoutPair: pValue > WORTH_A_LOOK ? 1 : fit.loudest.reduce((most, pair) => Math.max(most, without(pair)), pValue),
     takes: bentTakes(fit),
   };
 }
@@ -75,7 +78,7 @@ const UNTESTED = {
   uncertainty: Number.NaN,
   dof: 0,
   pValue: Number.NaN,
-  restsOnOnePair: false,
+  pWithoutPair: Number.NaN,
   takes: [],
 };
 

@@ -2,7 +2,11 @@ import type { ScatterStep } from '../estimate/scatter-step.ts';
 import type { LinkStatus } from '../model/separability.ts';
 import type { ExplainedTake } from './explanations.ts';
 import type { HoldFinding } from './holds.ts';
+import type { LevelMisfit } from './level-misfit.ts';
+import type { LoopFindings } from './loops.ts';
 import type { MountDifference } from './mount-differences.ts';
+import type { ReciprocityFindings } from './reciprocity-bands.ts';
+import type { WholeSetFindings } from './whole-set.ts';
 
 /** A stretch of frequencies with a mean level in it. */
 export interface BandLevel {
@@ -146,5 +150,12 @@ export interface Examination {
   readonly scatter: readonly ScatterStep[];
   /** Differences between mounts of one unit; empty where no unit has two. */
   readonly mounts: readonly MountDifference[];
+  /** Even closed walks of pairs, which must close whatever the units are. */
+  readonly loops: LoopFindings;
+  /** Misfit that depends on the level: saturation, noise floor. */
+  readonly levels: LevelMisfit;
+  readonly reciprocity: ReciprocityFindings;
+  /** The whole set per third-octave band. */
+  readonly bands: WholeSetFindings;
   readonly whole: WholeFinding;
 }

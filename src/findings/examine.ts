@@ -1,5 +1,5 @@
 import { scatterLadder } from '../estimate/scatter-ladder.ts';
-import { LINK_STATUS, type Solution } from '../estimate/solution.ts';
+import { LINK_STATUS, type ReadingUncertainty, type Solution } from '../estimate/solution.ts';
 import { type ThirdOctaves, thirdOctaves } from '../estimate/third-octaves.ts';
 import type { Model } from '../model/model.ts';
 import { detectability } from '../numeric/detectability.ts';
@@ -17,10 +17,14 @@ import type {
   WholeFinding,
 } from './examination.ts';
 import { holdFindings } from './holds.ts';
+import { levelMisfit } from './level-misfit.ts';
+import { loopFindings } from './loops.ts';
 import { mountDifferences } from './mount-differences.ts';
 import { openFindings } from './open-findings.ts';
+import { reciprocityFindings } from './reciprocity-bands.ts';
 import type { Settled } from './settle.ts';
 import { DETECTION_POWER, DETECTION_RISK } from './thresholds.ts';
+import { wholeSet } from './whole-set.ts';
 
 export interface ExamineOptions {
   /** Coverage probability of expanded uncertainties, such as 0.95. */
@@ -45,8 +49,19 @@ export function examine(set: TakeSet, model: Model, settled: Settled, options: E
     holds: holdFindings(model, screening.levels, options),
     mounts: mountDifferences(set, model, solution, factorOf),
     scatter: scatterLadder(set, model, solution, { ...options, exclude: settled.leftOut }),
-    whole: wholeFinding(solution, screening.isModelFailing),
+    loops: loopFindings(set, model, asIndependent(solution)),
+    levels: levelMisfit(set, model, { risk: options.risk }),
+    reciprocity: reciprocityFindings(set, model, options.risk),
+    bands: wholeSet(set, model, settled.first, { without: settled.leftOut }),
+    whole: wholeFinding(solution, settled.first.readingUncertainty, screening.isModelFailing),
   };
+}
+
+/** The solution with each reading's uncertainty as that of an independent one of the same weight: means of takes then have the right u. */
+function asIndependent(solution: Solution): Solution {
+  const { readingUncertainty } = solution;
+  const values = readingUncertainty.independent ?? readingUncertainty.values;
+  return { ...solution, readingUncertainty: { ...readingUncertainty, values } };
 }
 
 const DETECTABILITY = detectability(DETECTION_RISK, DETECTION_POWER);
@@ -209,8 +224,9 @@ function gainFindings(model: Model, solution: Solution): OpenFinding[] {
   }));
 }
 
-function wholeFinding(solution: Solution, isModelFailing: boolean): WholeFinding {
-  const { residuals, redundancy, readingUncertainty } = solution;
+/** @param reading what the readings say of themselves, without the scatter of seatings and partners. */
+function wholeFinding(solution: Solution, reading: ReadingUncertainty, isModelFailing: boolean): WholeFinding {
+  const { residuals, redundancy } = solution;
   let count = 0;
   let squares = 0;
   let weighted = 0;
@@ -222,13 +238,13 @@ function wholeFinding(solution: Solution, isModelFailing: boolean): WholeFinding
     count++;
     squares += residual * residual;
     // Bands without repeats have no uncertainty to hold against.
-    const u = readingUncertainty.values[cell]!;
+    const u = reading.values[cell]!;
     if (Number.isNaN(u)) continue;
     weighted += (residual / u) ** 2;
     weightedDof += solution.redundancy[cell]!;
   }
   const degreesOfFreedom = solution.degreesOfFreedom.reduce((sum, dof) => sum + dof, 0);
-  const isOwn = ['residuals', 'scatter', 'none'].includes(readingUncertainty.source);
+  const isOwn = reading.source === 'residuals' || reading.source === 'none';
   return {
     rmsResidual: Math.sqrt(squares / count),
     residualDeviation: degreesOfFreedom > 0 ? Math.sqrt(squares / degreesOfFreedom) : Number.NaN,

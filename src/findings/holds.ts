@@ -4,7 +4,7 @@ import type { Model } from '../model/model.ts';
 import { chiSquareUpperQuantile } from '../numeric/chi-square.ts';
 import { fUpper } from '../numeric/f-distribution.ts';
 import { holmAdjusted } from '../numeric/multiple-testing.ts';
-import type { SquaredContrast } from '../numeric/variance-shares.ts';
+import { type SquaredContrast, varianceShares } from '../numeric/variance-shares.ts';
 import type { ScreeningLevels } from './screening-levels.ts';
 
 /** Whether a unit's response depends on what it is mounted against, in one band. */
@@ -96,8 +96,8 @@ function unitsOf(model: Model): UnitLinks[] {
 
 interface BandContrasts {
   readonly contrasts: readonly SquaredContrast[];
-  /** Partner share of every link in dB², for the other ends of a unit's chains. */
-  readonly shares: Float64Array;
+  /** Partner share of every link in dB², to start from. */
+  readonly start: Float64Array;
   /** Degrees of freedom behind the known part. */
   readonly knownDof: number;
   /** Whether scatter below the partner step is known, so that the two can be told apart. */
@@ -112,7 +112,7 @@ function bandContrasts(
   const seatDof = seating === undefined ? Number.POSITIVE_INFINITY : seating.dof.reduce((sum, dof) => sum + dof, 0);
   return {
     contrasts: partnerContrasts(layout, fitted),
-    shares: partner?.shares ?? new Float64Array(n),
+    start: partner?.shares ?? new Float64Array(n),
     knownDof: seating === undefined ? repeatDof : seatDof,
     isTestable: repeatDof > 0 || seating !== undefined,
   };
@@ -120,13 +120,16 @@ function bandContrasts(
 
 function shareOf(
   links: ReadonlySet<number>,
-  { contrasts, shares, knownDof, isTestable }: BandContrasts,
+  { contrasts, start, knownDof, isTestable }: BandContrasts,
   { coverage }: HoldOptions,
 ) {
   const nothing = { partner: Number.NaN, low: Number.NaN, high: Number.NaN, pValue: Number.NaN, isTestable: false };
   const own = contrasts.filter(({ a, b }) => links.has(a) || links.has(b));
   const dof = own.reduce((sum, contrast) => sum + contrast.dof, 0);
   if (dof < FEWEST_DOF) return nothing;
+  // Shares of the others as they are without this unit, whose own scatter must not be laid at their door.
+  const others = contrasts.filter(({ a, b }) => !(links.has(a) || links.has(b)));
+  const { shares } = varianceShares(others, start.length, start);
   // What each chain of the unit would show if the unit's own share were q, beside the share of the other end.
   const rest = own.map(
     ({ a, b, known }) => known + [a, b].reduce((sum, end) => sum + (links.has(end) ? 0 : shares[end]!), 0),

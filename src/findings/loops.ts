@@ -32,7 +32,7 @@ export interface LoopBand {
   readonly independent: number;
   /** Mean of the alternating sum over these frequencies, in dB: 0 whatever the units are. */
   readonly closure: number;
-  /** Standard uncertainty of the closure in dB, from the readings' own: new seatings and partners are not in it. NaN where there is none. */
+  /** Standard uncertainty of the closure in dB; `uncertaintyOf` says what is in it. NaN where there is none. */
   readonly uncertainty: number;
   /** closure / uncertainty; NaN where there is no uncertainty. */
   readonly standardised: number;
@@ -52,8 +52,8 @@ export interface LoopFindings {
   readonly leftOut: number;
   /** Further loops of a large set that are not listed. */
   readonly beyondLimit: number;
-  /** What the uncertainties rest on, whatever else may have moved a pair. */
-  readonly uncertaintyOf: 'as seated';
+  /** Whether new seatings and partners are in the uncertainties, or only what moves a reading by itself. */
+  readonly uncertaintyOf: 'as seated' | 'all scatter';
   readonly uncertaintySource: UncertaintySource;
 }
 
@@ -87,7 +87,7 @@ export function loopFindings(set: TakeSet, model: Model, solution: Solution, opt
     })),
     leftOut: isLimited ? 0 : missing,
     beyondLimit: isLimited ? missing : 0,
-    uncertaintyOf: 'as seated',
+    uncertaintyOf: solution.readingUncertainty.source === 'scatter' ? 'all scatter' : 'as seated',
     uncertaintySource: solution.readingUncertainty.source,
   };
 }

@@ -6,7 +6,7 @@ import type { TakeSet } from '../takes/take-set.ts';
 export interface MountDifference {
   readonly unit: string;
   readonly role: Response['role'];
-  /** The difference is that of mount b less that of mount a. */
+  /** The difference is that of mount a less that of mount b. */
   readonly mountA: string;
   readonly mountB: string;
   readonly points: readonly MountPoint[];
@@ -65,7 +65,7 @@ function differencePoints(
     frequencies.forEach((f, k) => {
       const [cellA, cellB] = [f * n + a.link, f * n + b.link];
       const isKnown = isComparable(solution, f, a.link, b.link);
-      const difference = isKnown ? solution.estimates[cellB]! - solution.estimates[cellA]! : Number.NaN;
+      const difference = isKnown ? solution.estimates[cellA]! - solution.estimates[cellB]! : Number.NaN;
       const uncertainty = isKnown
         ? Math.sqrt(Math.max(0, scales[k]! * variance(matrix) + variance(common)))
         : Number.NaN;

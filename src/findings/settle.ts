@@ -13,6 +13,9 @@ import type { ScreeningLevels } from './screening-levels.ts';
 
 /** A solution that rests on the takes that agree, and what was found of the others. */
 export interface Settled {
+  /** All takes, weighed by what the readings say of themselves. */
+  readonly first: Solution;
+  /** The takes that agree, weighed by the scatter that was found. */
   readonly solution: Solution;
   readonly screening: Screening;
   /** Takes kept out of the solution. */
@@ -51,7 +54,7 @@ export async function settle(set: TakeSet, model: Model, options: SettleOptions)
     const out = new Set(setAside.filter((other) => other !== t && !rivals.has(other)));
     return explainTake(set, model, solution, t, { ...deviationOf(levels, set, t, out), correlation });
   });
-  return { solution, screening, leftOut, explained };
+  return { first, solution, screening, leftOut, explained };
 }
 
 /** The final solution: without the takes left out, and weighed by the scatter that was found where it can be told apart. */

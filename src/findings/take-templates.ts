@@ -1,5 +1,5 @@
 import type { Deviations } from '../estimate/scatter-of-level.ts';
-import type { Solution } from '../estimate/solution.ts';
+import { isGiven, type Solution } from '../estimate/solution.ts';
 import { neighbourCorrelation, shareForMean } from '../numeric/effective-share.ts';
 import { hertz } from '../quantity/frequency.ts';
 import { bandHolding, octaveBand } from '../quantity/octave-bands.ts';
@@ -138,11 +138,11 @@ function frequencyWeights(set: TakeSet, { residuals }: Solution): Float64Array {
   return level.map((value) => (floor > 0 ? 1 / Math.max(value, floor) ** 2 : 1));
 }
 
-/** Variance of one reading a frequency where the user gives it (`u_db` or one figure); 0 elsewhere. */
+/** Variance of one reading a frequency where the user gives it (`u_db`, averages, or one figure); 0 elsewhere. */
 function givenVariances({ readingUncertainty, residuals, patternOf }: Solution): Float64Array {
   const width = patternOf.length;
   const variances = new Float64Array(width);
-  if (readingUncertainty.source !== 'column' && readingUncertainty.source !== 'given') return variances;
+  if (!isGiven(readingUncertainty.source)) return variances;
   const counts = new Float64Array(width);
   for (let cell = 0; cell < residuals.length; cell++) {
     if (Number.isNaN(residuals[cell]!)) continue;

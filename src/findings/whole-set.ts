@@ -1,4 +1,4 @@
-import type { Solution } from '../estimate/solution.ts';
+import { isGiven, type Solution } from '../estimate/solution.ts';
 import { thirdOctaves } from '../estimate/third-octaves.ts';
 import type { Model } from '../model/model.ts';
 import { chiSquareUpper } from '../numeric/chi-square.ts';
@@ -107,7 +107,7 @@ function chiSquareIn(
   frequencies: readonly number[],
 ): Omit<ChiSquareTest, 'pAdjusted'> | undefined {
   const { source, values } = readingUncertainty;
-  if (source !== 'column' && source !== 'given') return undefined;
+  if (!isGiven(source)) return undefined;
   const width = set.frequencies.length;
   const stands = standingFor(frequencies.length);
   const vectors: MisfitVectors[] = [];

@@ -20,7 +20,7 @@ const COLUMNS: readonly Column<MountRow>[] = [
   { name: 'verdict', text: ({ point }) => point.verdict },
 ];
 
-/** `mounts.csv`: by how much a unit's response in one mount differs from that in another (b less a). */
+/** `mounts.csv`: by how much a unit's response in one mount differs from that in another (a less b). */
 export function mountsTable({ examination }: Result): OutputFile {
   return csvFile('mounts.csv', COLUMNS, function* () {
     for (const difference of examination.mounts) for (const point of difference.points) yield { difference, point };

@@ -1,6 +1,7 @@
 import { covarianceFile } from './covariance-json.ts';
 import { holdsTable } from './holds-table.ts';
 import { jsonText } from './json-text.ts';
+import { loopsTable } from './loops-table.ts';
 import { mountsTable } from './mounts-table.ts';
 import { pairsTable } from './pairs-table.ts';
 import { residualsTable } from './residuals-table.ts';
@@ -18,9 +19,10 @@ export function outputFiles(result: Result): OutputFile[] {
     takesTable(result),
     pairsTable(result),
     residualsTable(result),
+    loopsTable(result.examination.loops.loops),
     scatterTable(result),
     holdsTable(result),
-    ...(result.examination.mounts.length > 0 ? [mountsTable(result)] : []),
+    mountsTable(result),
     unusedTable(result),
     { name: 'summary.json', chunks: () => [jsonText(summaryRecord(result))] },
     covarianceFile(result),

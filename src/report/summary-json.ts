@@ -1,4 +1,5 @@
 import type { UnitFinding } from '../findings/examination.ts';
+import { agreementRecord } from './agreement-json.ts';
 import { benchCounts } from './bench-counts.ts';
 import { availability, jsonFigure, jsonLevel } from './json-text.ts';
 import { roundedFrequency } from './number-text.ts';
@@ -51,6 +52,7 @@ export function summaryRecord(result: Result): Readonly<Record<string, unknown>>
     },
     takes: takesRecord(result),
     mounting: mountingRecord(result),
+    agreement: agreementRecord(result),
     units: examination.units.map((unit) => unitRecord(result, unit)),
     gains: solution.gains.map((gain) => ({
       name: model.links[gain.link]!.name,

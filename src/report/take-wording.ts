@@ -10,7 +10,7 @@ import type { Result } from './result.ts';
 import { bandText, listText } from './wording.ts';
 
 /** Explanations that the data do not tell from the best one, best first; the best one alone where it stands out. */
-function likelyExplanations({ ranked }: ExplainedTake): Explanation[] {
+export function likelyExplanations({ ranked }: ExplainedTake): Explanation[] {
   const likely = ranked.filter(({ isEquallyGood }) => isEquallyGood).map(({ explanation }) => explanation);
   const [slope, gain] = (['slope', 'moved gain'] as const).map((kind) =>
     likely.findIndex((explanation) => explanation.kind === kind),
@@ -60,6 +60,20 @@ function explanationText(explanation: Explanation, coverage: number): string {
       return `another unit's label: ${explanation.unit} as ${explanation.end}`;
     case 'direction reversed':
       return 'direction reversed';
+  }
+}
+
+/** An explanation in a few words without figures, for a legend. */
+export function explanationName(explanation: Explanation): string {
+  switch (explanation.kind) {
+    case 'another label':
+      return `${explanation.unit} as ${explanation.end}`;
+    case 'local':
+      return explanation.height < 0 ? 'dip' : 'bump';
+    case 'scatter':
+      return 'scatter around the rest';
+    default:
+      return explanation.kind;
   }
 }
 

@@ -1,5 +1,6 @@
 import type { UnitFinding } from '../findings/examination.ts';
 import { roundedText } from '../quantity/rounding.ts';
+import { levelSentences, reciprocitySentences } from './agreement-wording.ts';
 import { benchCounts } from './bench-counts.ts';
 import { bandsWith, unitHolds } from './held-bands.ts';
 import { dependenceSentences, holdsCell } from './hold-wording.ts';
@@ -38,6 +39,7 @@ export function terminalSummary(result: Result, { folder, style }: TerminalOptio
     unitTable(result, style),
     dependenceLines(result, style),
     flaggedLines(result, style),
+    agreementLines(result, style),
     openLines(result, style),
     basisLines(result),
     noticeLines(result, style),
@@ -163,6 +165,14 @@ function capped(sentences: readonly string[], name: string, file: string): strin
   const more = sentences.length - MOST_ENTRIES;
   if (more <= 0) return [...sentences];
   return [...sentences.slice(0, MOST_ENTRIES), `And ${counted(more, `more ${name}`)}: see ${file}.`];
+}
+
+function agreementLines(result: Result, style: TextStyle): string[] {
+  return listed(
+    'What depends on level or direction',
+    [...levelSentences(result), ...reciprocitySentences(result)],
+    style,
+  );
 }
 
 function noticeLines({ input, set }: Result, style: TextStyle): string[] {

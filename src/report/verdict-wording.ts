@@ -167,6 +167,10 @@ function agreementStatement({ examination, solution }: Result): Statement {
   }
   const times = `${left} That is ${twoDigits(ratio)} times what the uncertainties of the readings say (${figure})`;
   if (ratio < 1) return { text: `${times}: they look too large, and with them those of the levels.`, tone: 'warning' };
+  if (solution.readingUncertainty.source === 'scatter') {
+    const text = `${times}: what new mountings and partners add comes on top. It is in the uncertainties of the levels.`;
+    return { text, tone: 'plain' };
+  }
   const isTested = takes.every(
     ({ verdict, isLeftOut }) => verdict === 'agrees' || verdict === 'uncheckable' || isLeftOut,
   );

@@ -128,17 +128,19 @@ describe('misfit that depends on the level', () => {
     expect(shown).toBeLessThanOrEqual(5);
   });
 
-  it('a gain moved in the strongest or weakest pair is no question of level', () => {
-    for (const seed of SEEDS.slice(0, 8)) {
+  it('a pair that is 4 dB off as a whole, the strongest or the weakest, is no question of level in at least 9 of 10 sets', () => {
+    let mistaken = 0;
+    for (const seed of SEEDS) {
       const clean = simulate(seed);
       const width = clean.frequencies.length;
-      const means = clean.takes.map((_, t) => quantile(clean.levels.subarray(t * width, (t + 1) * width), 0.5));
-      for (const [wanted, db] of [[Math.max(...means), -4] as const, [Math.min(...means), 4] as const]) {
-        const { emitter, receiver } = clean.takes[means.indexOf(wanted)]!;
+      const medians = clean.takes.map((_, t) => quantile(clean.levels.subarray(t * width, (t + 1) * width), 0.5));
+      for (const [wanted, db] of [[Math.max(...medians), -4] as const, [Math.min(...medians), 4] as const]) {
+        const { emitter, receiver } = clean.takes[medians.indexOf(wanted)]!;
         const isPair = (t: number) => clean.takes[t]!.emitter === emitter && clean.takes[t]!.receiver === receiver;
-        expect(judge(bent(clean, (_, t) => (isPair(t) ? db : 0)).set).verdict, `seed ${seed}`).toBe('none shown');
+        if (judge(bent(clean, (_, t) => (isPair(t) ? db : 0)).set).verdict !== 'none shown') mistaken++;
       }
     }
+    expect(mistaken).toBeLessThanOrEqual(0.1 * 2 * SEEDS.length);
   });
 });
 

@@ -28,12 +28,12 @@ describe('responses.csv', () => {
     // var(H) = 3/4 u² for three pairs of three units: u = 0.4 √0.75 = 0.346410; k = 1.959964 (normal, 95 %).
     expect(textOf(responsesTable(await resultOf(ISLANDS)))).toBe(
       [
-        'unit,mount,role,frequency_hz,level_db,u_db,k,expanded_db,dof,status,mounting',
-        'A,,both,1000,6.000000,0.34641,1.95996,0.678951,inf,ok,not testable',
-        'B,,both,1000,4.000000,0.34641,1.95996,0.678951,inf,ok,not testable',
-        'C,,both,1000,2.000000,0.34641,1.95996,0.678951,inf,ok,not testable',
-        'yonder,,both,1000,,,,,,open,not testable',
-        'beyond,,both,1000,,,,,,open,not testable',
+        'unit,mount,role,frequency_hz,level_db,u_db,k,expanded_db,dof,u_reseat_db,u_partner_db,status,mounting',
+        'A,,both,1000,6.000000,0.34641,1.95996,0.678951,inf,,,ok,not testable',
+        'B,,both,1000,4.000000,0.34641,1.95996,0.678951,inf,,,ok,not testable',
+        'C,,both,1000,2.000000,0.34641,1.95996,0.678951,inf,,,ok,not testable',
+        'yonder,,both,1000,,,,,,,,open,not testable',
+        'beyond,,both,1000,,,,,,,,open,not testable',
         '',
       ].join('\n'),
     );
@@ -42,7 +42,7 @@ describe('responses.csv', () => {
   test('without any uncertainty the cells for it are empty, never 0', async () => {
     const { u: _, ...without } = ISLANDS;
     const lines = textOf(responsesTable(await resultOf(without))).split('\n');
-    expect(lines[1]).toBe('A,,both,1000,6.000000,,,,,ok,not testable');
+    expect(lines[1]).toBe('A,,both,1000,6.000000,,,,,,,ok,not testable');
   });
 
   test('a level that rests on a datum is written with that status, and mounts in their own column', async () => {
@@ -52,7 +52,7 @@ describe('responses.csv', () => {
     });
     const result = await resultOf({ frequencies: [1250.5], lines, options: { model: 'directional' }, u: 1 });
     expect(textOf(responsesTable(result)).split('\n')[1]).toMatch(
-      /^A,bare,emit,1250.5,0.000000,[\d.]+,1.95996,[\d.]+,inf,datum,not testable$/,
+      /^A,bare,emit,1250.5,0.000000,[\d.]+,1.95996,[\d.]+,inf,,,datum,not testable$/,
     );
   });
 

@@ -1,4 +1,5 @@
 import { COVERAGE_CASES, coverageOf } from './coverage.ts';
+import { cleanSets, exchangedLabels, fourFaults, localDips, movedGains, shiftingResonances } from './detection.ts';
 
 /*
  * The simulations at length: `npm run simulate` for ten times as many sets as the suite takes, `npm run simulate -- 50`
@@ -19,4 +20,20 @@ for (const bench of COVERAGE_CASES) {
   process.stdout.write(
     `${bench.title}\n  truth held ${share} (one sampling error); ${intervals} intervals in ${sets} sets; dof ${dof}\n`,
   );
+}
+
+/** Sets of each kind of fault, by how many times the suite's sets were asked for. */
+const sets = Math.round(20 * times);
+const detections = [
+  ['nothing wrong', cleanSets],
+  ['gain moved by 1 dB in one take', movedGains],
+  ['exchanged label in one take', exchangedLabels],
+  ['dip of 2 dB over a third of an octave in one take', localDips],
+  ['four faults of different kinds', fourFaults],
+  ['resonance that shifts by 3 % with the partner', shiftingResonances],
+] as const;
+for (const [title, detect] of detections) {
+  const { counts } = await detect(sets);
+  const shares = Object.entries(counts).map(([what, count]) => `${what} ${((100 * count) / sets).toFixed(2)} %`);
+  process.stdout.write(`${title} (${sets} sets)\n  ${shares.join('; ')}\n`);
 }
