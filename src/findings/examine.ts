@@ -1,6 +1,7 @@
 import { scatterLadder } from '../estimate/scatter-ladder.ts';
 import { LINK_STATUS, type ReadingUncertainty, type Solution } from '../estimate/solution.ts';
 import { type ThirdOctaves, thirdOctaves } from '../estimate/third-octaves.ts';
+import { RECIPROCITY_RISK } from '../model/choose-model.ts';
 import type { Model } from '../model/model.ts';
 import { detectability } from '../numeric/detectability.ts';
 import { coverageFactors } from '../numeric/student-t.ts';
@@ -51,10 +52,17 @@ export function examine(set: TakeSet, model: Model, settled: Settled, options: E
     scatter: scatterLadder(set, model, solution, { ...options, exclude: settled.leftOut }),
     loops: loopFindings(set, model, asIndependent(solution)),
     levels: levelMisfit(set, model, { risk: options.risk }),
-    reciprocity: reciprocityFindings(set, model, options.risk),
+    // The same risk as where the model is chosen: what was not enough to choose otherwise is not held against the choice.
+    reciprocity: reciprocityFindings(withoutTakes(set, settled.leftOut), model, RECIPROCITY_RISK),
     bands: wholeSet(set, model, settled.first, { without: settled.leftOut }),
     whole: wholeFinding(solution, settled.first.readingUncertainty, screening.isModelFailing),
   };
+}
+
+function withoutTakes(set: TakeSet, without: ReadonlySet<number>): TakeSet {
+  const width = set.frequencies.length;
+  const levels = set.levels.map((level, cell) => (without.has(Math.floor(cell / width)) ? Number.NaN : level));
+  return without.size === 0 ? set : { ...set, levels };
 }
 
 /** The solution with each reading's uncertainty as that of an independent one of the same weight: means of takes then have the right u. */

@@ -10,7 +10,7 @@ export interface Patterns {
 }
 
 /** A reading counts where it was measured and the exactly known part of its chain is known. */
-export function isAvailable(set: TakeSet, model: Model, take: number, frequency: number): boolean {
+function isAvailable(set: TakeSet, model: Model, take: number, frequency: number): boolean {
   const level = set.levels[take * set.frequencies.length + frequency]!;
   const known = model.chains[take]!.known;
   return !Number.isNaN(level) && (known === undefined || !Number.isNaN(known[frequency]!));

@@ -48,7 +48,7 @@ export const numberIn = (row: CsvRow, column: string): number => {
   return cell === undefined || cell === '' ? Number.NaN : Number(cell);
 };
 
-export const outputsOf = (outcome: Outcome, folder: string, added: readonly string[]): Solved => {
+const outputsOf = (outcome: Outcome, folder: string, added: readonly string[]): Solved => {
   const path = (name: string) => join(folder, 'out', name);
   const rows = (name: string) => readCsv(path(name));
   const response = (unit: string, where: Where = {}): CsvRow => {

@@ -196,7 +196,7 @@ describe('oddloop solve', () => {
     const { status, stderr } = bench.run('solve', 'ring.csv', ...RECIPROCAL);
     expect(status).toBe(4);
     expect(stderr).toMatch(/^Nothing can be told apart: /);
-    expect(readFileSync(bench.at('result/responses.csv'), 'utf8')).toMatch(/^N01,,both,1000,,,,,,open,not testable$/m);
+    expect(readFileSync(bench.at('result/responses.csv'), 'utf8')).toMatch(/^N01,,both,1000,,,,,,,,open,not testable$/m);
   });
 
   it('ends with 3 and writes nothing where the input cannot be used', () => {
