@@ -8,8 +8,8 @@ export interface TakeShifts {
   readonly shift: Float64Array;
   /** Standard uncertainty in dB of each column of a take. */
   readonly uncertainty: Float64Array;
-  /** Effective degrees of freedom of that uncertainty. */
-  readonly dof: Float64Array;
+  /** Effective degrees of freedom of that uncertainty, worked out when asked for: few takes stand out enough to need them. */
+  readonly dofOf: (take: number) => number;
 }
 
 /**
@@ -27,7 +27,7 @@ export function shiftsOfTakes(layout: ChainLayout, scatter: LevelScatter, only?:
   const shifts: TakeShifts = {
     shift: new Float64Array(count * columns).fill(Number.NaN),
     uncertainty: new Float64Array(count).fill(Number.NaN),
-    dof: new Float64Array(count).fill(Number.NaN),
+    dofOf: (take) => (Number.isNaN(shifts.uncertainty[take]!) ? Number.NaN : dofOfShift(layout, scatter, take)),
   };
   if (only === undefined) for (let t = 0; t < count; t++) shiftOf(layout, scatter, t, shifts);
   else for (const t of only) shiftOf(layout, scatter, t, shifts);
@@ -46,11 +46,8 @@ function shiftOf(layout: ChainLayout, scatter: LevelScatter, take: number, into:
   const part = fitted.seatPrecision[seat]! / fitted.chainPrecision[chain]!;
   const spread = 1 + fitted.chainPartner[chain]! * fitted.chainPrecision[chain]!;
   const left = Math.max(0, 1 - fitted.chainWeight[chain]! * fitted.leverageFactor[chain]!);
-  const isOnlySeat = part > 1 - 1e-12;
-  if (count === 1 && isOnlySeat && !(left > UNCHECKED)) return;
-  // Written as a sum of what repeats, other seatings and other chains tell, so that nothing cancels.
-  const ofChain = (isOnlySeat ? 0 : 1 - part) * spread + part * left;
-  const information = (count - 1) / (count * repeat) + (h * ofChain) / (count * spread);
+  if (count === 1 && part > ONLY_SEAT && !(left > UNCHECKED)) return;
+  const information = informationOn(count, repeat, h, part, spread, left);
   for (let c = 0; c < columns; c++) {
     const seatMean = fitted.seatMean[seat * columns + c]!;
     const within = count === 1 ? 0 : (values[take * columns + c]! - seatMean) / repeat;
@@ -59,19 +56,28 @@ function shiftOf(layout: ChainLayout, scatter: LevelScatter, take: number, into:
     into.shift[take * columns + c] = (within + h * ofSeat) / information;
   }
   into.uncertainty[take] = 1 / Math.sqrt(information);
-  into.dof[take] = dofOfShift(layout, scatter, chain, seat, { h, information, spread, left });
 }
 
-interface Parts {
-  readonly h: number;
-  readonly information: number;
-  readonly spread: number;
-  readonly left: number;
+/** A seating with this part of its chain is the only one; the rest is rounding. */
+const ONLY_SEAT = 1 - 1e-12;
+
+/** Pₜₜ, written as a sum of what repeats, other seatings and other chains tell, so that nothing cancels. */
+function informationOn(count: number, repeat: number, h: number, part: number, spread: number, left: number): number {
+  const ofChain = (part > ONLY_SEAT ? 0 : 1 - part) * spread + part * left;
+  return (count - 1) / (count * repeat) + (h * ofChain) / (count * spread);
 }
 
-function dofOfShift(layout: ChainLayout, scatter: LevelScatter, chain: number, seat: number, parts: Parts): number {
-  const { h, information, spread, left } = parts;
-  const { seatPrecision, chainPrecision, seatVariance, chainPartner } = scatter.fitted;
+function dofOfShift(layout: ChainLayout, scatter: LevelScatter, take: number): number {
+  const { seatPrecision, chainPrecision, seatVariance, chainPartner, chainWeight, leverageFactor, seatCount } =
+    scatter.fitted;
+  const seat = layout.seatOf[take]!;
+  const chain = layout.chainOfSeat[seat]!;
+  const count = seatCount[seat]!;
+  const h = 1 / (scatter.repeatVariance + count * seatVariance[chain]!);
+  const spread = 1 + chainPartner[chain]! * chainPrecision[chain]!;
+  const left = Math.max(0, 1 - chainWeight[chain]! * leverageFactor[chain]!);
+  const own = seatPrecision[seat]! / chainPrecision[chain]!;
+  const information = informationOn(count, scatter.repeatVariance, h, own, spread, left);
   let seatPart = 0;
   for (let other = layout.seatStart[chain]!; other < layout.seatStart[chain + 1]!; other++) {
     // Sum of P's column of the take over the takes of a seating.

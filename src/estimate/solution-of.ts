@@ -2,6 +2,7 @@ import type { Patterns } from '../model/find-patterns.ts';
 import type { Model } from '../model/model.ts';
 import type { SystematicEffect } from '../model/systematic-effects.ts';
 import type { TakeSet } from '../takes/take-set.ts';
+import type { BlockSystem } from './factor-block.ts';
 import type { ScatterOfUses } from './reading-scatter.ts';
 import type { CovarianceBlock, GainEstimate, ReadingUncertainty, Solution } from './solution.ts';
 import { LINK_STATUS } from './solution.ts';
@@ -49,14 +50,14 @@ export function solutionOf(
   const shifts = systematicShifts(swept, effects);
   swept.blocks.forEach(({ block, factored }, b) => {
     const ofGains = gainPart(factored.coupling, swept.gains.covariance, n, block.system.gains);
-    const fromPriors = priorPart(factored.covariance, block.system.priorLinks, block.system.priorWeights, n);
+    const fromPriors = priorPart(model, factored.covariance, block.system, n);
     const linkStatus = linkStatuses(patterns, block.pattern, factored.coupling, swept, n);
     for (const { frequencies, reaching } of reachedAlike(block.frequencies, shifts, b)) {
       const scales = Float64Array.from(frequencies, (f) =>
         hasUncertainty(reading, set, f, patterns) ? swept.unitVariance[f]! : Number.NaN,
       );
       const common = withEffects(ofGains, reaching, n);
-      covariance.push({ frequencies, scales, matrix: factored.covariance, common });
+      covariance.push({ frequencies, scales, matrix: factored.covariance, common, ofGains, reaching });
       frequencies.forEach((f, k) => {
         for (let link = 0; link < n; link++) {
           const cell = f * n + link;
@@ -171,11 +172,17 @@ function gainPart(coupling: Float64Array, gains: Float64Array, n: number, count:
   return part;
 }
 
-/** Diagonal of C P C: the variance that known values bring in, on the scale of the block. */
-function priorPart(covariance: Float64Array, links: readonly number[], weights: Float64Array, n: number): Float64Array {
+/** Diagonal of C P C: the variance that known values bring in, on the scale of the block. What is drawn at random is not known. */
+function priorPart(
+  { links }: Model,
+  covariance: Float64Array,
+  { priorLinks, priorWeights }: BlockSystem,
+  n: number,
+): Float64Array {
   const part = new Float64Array(n);
-  links.forEach((prior, k) => {
-    for (let i = 0; i < n; i++) part[i] = part[i]! + covariance[i * n + prior]! ** 2 * weights[k]!;
+  priorLinks.forEach((prior, k) => {
+    if (links[prior]!.prior!.kind === 'random') return;
+    for (let i = 0; i < n; i++) part[i] = part[i]! + covariance[i * n + prior]! ** 2 * priorWeights[k]!;
   });
   return part;
 }

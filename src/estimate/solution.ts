@@ -1,4 +1,6 @@
 import type { Pattern } from '../model/separability.ts';
+import type { ReadingScatter } from './reading-scatter.ts';
+import type { Reaching } from './systematic-shifts.ts';
 
 /** Where the uncertainty of a reading came from. */
 export type UncertaintySource = 'column' | 'averages' | 'repeats' | 'given' | 'residuals' | 'scatter' | 'none';
@@ -46,6 +48,12 @@ export interface CovarianceBlock {
   readonly matrix: Float64Array;
   /** The part that comes from gains shared by all frequencies and from systematic effects, in dB²; absent without them. */
   readonly common: Float64Array | undefined;
+  /** The part of `common` that comes from gains alone. */
+  readonly ofGains?: Float64Array | undefined;
+  /** The systematic effects, with the shift of each link for 1 dB of them. */
+  readonly reaching?: readonly Reaching[];
+  /** As `matrix`, with the links of shared seatings behind the others; absent where no seating is shared. */
+  readonly wide?: Float64Array | undefined;
 }
 
 /** The estimate of a gain that is shared by all frequencies. */
@@ -91,6 +99,8 @@ export interface Solution {
   readonly redundancy: Float64Array;
   readonly readingUncertainty: ReadingUncertainty;
   readonly covariance: readonly CovarianceBlock[];
+  /** The scatter that weighs the readings; absent where they are weighed by what they say of themselves. */
+  readonly scatter?: ReadingScatter | undefined;
   readonly gains: readonly GainEstimate[];
   /** Degrees of freedom of the fit at each frequency: Σ redundancy. */
   readonly degreesOfFreedom: Float64Array;

@@ -63,12 +63,12 @@ async function solveAgain(
   model: Model,
   options: SettleOptions,
   first: Solution,
-  { layout, links, bands }: ScreeningLevels,
+  { layout, bands }: ScreeningLevels,
   leftOut: ReadonlySet<number>,
 ): Promise<Solution> {
   const width = set.frequencies.length;
   const levels = set.levels.map((level, cell) => (leftOut.has(Math.floor(cell / width)) ? Number.NaN : level));
-  const scatter = readingScatter({ ...set, levels }, layout, links, bands, first.readingUncertainty);
+  const scatter = readingScatter({ ...set, levels }, model, layout, bands, first.readingUncertainty);
   if (scatter === undefined && leftOut.size === 0) return first;
   return solve(set, model, { ...options, without: leftOut, scatter });
 }
@@ -91,7 +91,11 @@ function deviationOf(levels: ScreeningLevels, set: TakeSet, take: number, out: R
   }
   const level = levels.templates.find(({ kind }) => kind === 'constant');
   const found = level && shiftIn(level.scatter);
-  const constant = found && { shift: found.shift[take]!, uncertainty: found.uncertainty[take]!, dof: found.dof[take]! };
+  const constant = found && {
+    shift: found.shift[take]!,
+    uncertainty: found.uncertainty[take]!,
+    dof: found.dofOf(take),
+  };
   return { shift, uncertainty, constant };
 }
 

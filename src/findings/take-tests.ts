@@ -64,10 +64,10 @@ function testsWith(
   };
   for (const { kind, scatter } of levels.templates) {
     if (!scatter.isKnown) continue;
-    const { shift, uncertainty, dof } = shiftsOfTakes(levels.layout, scatter, only);
+    const { shift, uncertainty, dofOf } = shiftsOfTakes(levels.layout, scatter, only);
     for (let t = 0; t < count; t++) {
       const w = Math.abs(shift[t]! / uncertainty[t]!);
-      if (!Number.isNaN(w)) note(t, w < surelyTame ? 1 : studentTwoSided(w, dof[t]!), kind, w * w);
+      if (!Number.isNaN(w)) note(t, w < surelyTame ? 1 : studentTwoSided(w, dofOf(t)), kind, w * w);
     }
   }
   noteSquares(squares, spread, only, note);
@@ -79,28 +79,29 @@ interface MeanSquares {
   readonly width: number;
   /** Share of the frequencies that count as independent by the correlation of neighbours; only where all takes were asked for. */
   readonly share: number;
-  /** A take each: how many frequencies are known, and the mean degrees of freedom behind them. */
-  readonly found: readonly { readonly known: number; readonly square: number; readonly dof: number }[];
+  /** A take each: how many frequencies are known, and their mean square. Then the mean degrees of freedom behind them. */
+  readonly found: readonly { readonly known: number; readonly square: number }[];
+  readonly dofOf: (take: number) => number;
 }
 
 function meanSquares({ bands, layout }: ScreeningLevels, count: number, only?: readonly number[]): MeanSquares {
   const width = bands.reduce((sum, band) => sum + band.frequencies.length, 0);
   const standardised = new Float64Array(count * width).fill(Number.NaN);
-  const spent = new Float64Array(count);
+  const parts: { readonly columns: number; readonly dofOf: (take: number) => number }[] = [];
   const takes = only ?? Array.from({ length: count }, (_, t) => t);
   for (const { scatter, frequencies } of bands) {
     if (!scatter.isKnown) continue;
     const columns = frequencies.length;
-    const { shift, uncertainty, dof } = shiftsOfTakes(layout, scatter, only);
+    const { shift, uncertainty, dofOf } = shiftsOfTakes(layout, scatter, only);
+    parts.push({ columns, dofOf });
     for (const t of takes) {
       if (Number.isNaN(uncertainty[t]!)) continue;
       for (let c = 0; c < columns; c++) {
         standardised[t * width + frequencies[c]!] = shift[t * columns + c]! / uncertainty[t]!;
       }
-      spent[t] = spent[t]! + columns / dof[t]!;
     }
   }
-  const nothing = { known: 0, square: Number.NaN, dof: Number.NaN };
+  const nothing = { known: 0, square: Number.NaN };
   const found = new Array<MeanSquares['found'][number]>(count).fill(nothing);
   for (const t of takes) {
     let known = 0;
@@ -111,27 +112,43 @@ function meanSquares({ bands, layout }: ScreeningLevels, count: number, only?: r
       known++;
       squares += value * value;
     }
-    // Each band's scatter was estimated apart; the mean of their degrees of freedom stands for all.
-    found[t] = { known, square: squares / known, dof: spent[t]! > 0 ? known / spent[t]! : Number.POSITIVE_INFINITY };
+    found[t] = { known, square: squares / known };
   }
   const share =
     only === undefined ? shareForVariance(neighbourCorrelation(standardised, count, width), width) : Number.NaN;
-  return { width, share, found };
+  // Each band's scatter was estimated apart; the mean of their degrees of freedom stands for all.
+  const dofOf = (take: number) => {
+    let known = 0;
+    let spent = 0;
+    for (const part of parts) {
+      const dof = part.dofOf(take);
+      if (Number.isNaN(dof)) continue;
+      known += part.columns;
+      spent += part.columns / dof;
+    }
+    return spent > 0 ? known / spent : Number.POSITIVE_INFINITY;
+  };
+  return { width, share, found, dofOf };
 }
+
+/** A chance above this is 1 once it is corrected for the tests of a take, of which there are some. */
+const LARGE_CHANCE = 0.5;
 
 /** Any deviation: the mean square, with as many frequencies counted independent as the takes' own spread leaves. */
 function noteSquares(
-  { width, found }: MeanSquares,
+  { width, found, dofOf }: MeanSquares,
   spread: SpreadOfSquares,
   only: readonly number[] | undefined,
   note: Note,
 ): void {
   for (const t of only ?? found.keys()) {
-    const { known, square, dof } = found[t]!;
+    const { known, square } = found[t]!;
     if (known === 0) continue;
     const independent = Math.max(1, spread.dof * (known / width));
     const ratio = square / spread.excess;
-    note(t, ratio < 1 ? 1 : fUpper(ratio, independent, dof), 'any', ratio * independent);
+    // With known scatter the chance is smallest: where even that is large, nothing more is worked out.
+    const least = ratio < 1 ? 1 : fUpper(ratio, independent, Number.POSITIVE_INFINITY);
+    note(t, least > LARGE_CHANCE ? 1 : fUpper(ratio, independent, dofOf(t)), 'any', ratio * independent);
   }
 }
 
@@ -140,6 +157,6 @@ export function constantShifts(levels: ScreeningLevels, count: number, only?: re
   const constant = levels.templates.find(({ kind }) => kind === 'constant');
   const nothing = { shift: Number.NaN, uncertainty: Number.NaN, dof: Number.NaN };
   if (constant === undefined || !constant.scatter.isKnown) return new Array<ConstantShift>(count).fill(nothing);
-  const { shift, uncertainty, dof } = shiftsOfTakes(levels.layout, constant.scatter, only);
-  return Array.from({ length: count }, (_, t) => ({ shift: shift[t]!, uncertainty: uncertainty[t]!, dof: dof[t]! }));
+  const { shift, uncertainty, dofOf } = shiftsOfTakes(levels.layout, constant.scatter, only);
+  return Array.from({ length: count }, (_, t) => ({ shift: shift[t]!, uncertainty: uncertainty[t]!, dof: dofOf(t) }));
 }
