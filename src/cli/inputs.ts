@@ -1,6 +1,8 @@
 import { DEFAULT_MODEL_OPTIONS, type ModelOptions } from '../model/model-options.ts';
 import { parseRange } from '../quantity/frequency.ts';
 import { InputError } from '../quantity/input-fault.ts';
+import type { BudgetLine } from '../readings/budget-lines.ts';
+import { readBudget } from '../readings/read-budget.ts';
 import { readFiles } from '../readings/read-files.ts';
 import { readPathLevels } from '../readings/read-path-levels.ts';
 import { readReferences } from '../readings/read-references.ts';
@@ -34,8 +36,9 @@ export async function settingsOf(
 
 /** Names of all files that the settings say are to be read. */
 export function namedFiles(settings: Settings): string[] {
-  const { files, refs, path } = settings;
-  return [...files, ...(refs === null ? [] : [refs]), ...(pathWord(path) === undefined ? [path] : [])];
+  const { files, refs, path, budget } = settings;
+  const tables = [refs, pathWord(path) === undefined ? path : null, budget];
+  return [...files, ...tables.filter((table) => table !== null)];
 }
 
 /** Reads the measurement files. */
@@ -66,20 +69,23 @@ export function gatherOptions(settings: Settings): GatherOptions {
 /** What the user decides about the model, with what was read for it. */
 export interface ModelInputs {
   readonly options: ModelOptions;
-  /** Tables of certificates and path levels. */
+  /** Systematic effects. */
+  readonly budget: readonly BudgetLine[];
+  /** Tables of certificates, path levels and systematic effects. */
   readonly files: readonly InputFile[];
   readonly notices: readonly string[];
 }
 
-/** Reads certificates and path levels from their files; faults of both are told together. */
+/** Reads certificates, path levels and systematic effects from their files; faults of all are told together. */
 export async function readModelInputs(settings: Settings): Promise<ModelInputs> {
-  const { model, datum, reversible, lookalikes, refs, path } = settings;
+  const { model, datum, reversible, lookalikes, refs, path, budget } = settings;
   const word = pathWord(path);
-  const [certificates, levels] = await allOrFaults([
+  const [certificates, levels, effects] = await allOrFaults([
     refs === null ? undefined : fileSource(refs).then(readReferences),
     word === undefined ? fileSource(path).then(readPathLevels) : undefined,
+    budget === null ? undefined : fileSource(budget).then(readBudget),
   ]);
-  const tables = [certificates, levels].filter((table) => table !== undefined);
+  const tables = [certificates, levels, effects].filter((table) => table !== undefined);
   return {
     options: {
       ...DEFAULT_MODEL_OPTIONS,
@@ -91,6 +97,7 @@ export async function readModelInputs(settings: Settings): Promise<ModelInputs> 
       references: certificates?.references ?? [],
       path: word ?? levels?.levels ?? [],
     },
+    budget: effects?.lines ?? [],
     files: tables.map(({ file }) => file),
     notices: tables.flatMap(({ notices }) => notices),
   };

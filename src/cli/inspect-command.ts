@@ -1,6 +1,7 @@
 import { openFindings } from '../findings/open-findings.ts';
 import { buildModel } from '../model/build-model.ts';
 import { findPatterns } from '../model/find-patterns.ts';
+import { systematicEffects } from '../model/systematic-effects.ts';
 import { inspectRecord } from '../report/inspect-json.ts';
 import { inspectText } from '../report/inspect-text.ts';
 import { jsonText } from '../report/json-text.ts';
@@ -27,6 +28,7 @@ export async function inspectCommand(request: Request): Promise<number> {
     const readings = await readMeasurements(settings, progress);
     const set = gatherTakes(readings, gatherOptions(settings));
     const modelInputs = await readModelInputs(settings);
+    systematicEffects(set, modelInputs.budget);
     const model = buildModel(set, modelInputs.options);
     const patterns = findPatterns(set, model);
     const inspection: Inspection = {

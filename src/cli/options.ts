@@ -31,6 +31,7 @@ export function addShapingOptions(command: Command): Command {
     .option('--band <LO..HI>', "use these frequencies only, such as '2 kHz..80 kHz'")
     .option('--grid <GRID>', '1/3, 1/6, 1/12, 1/24, as-measured or DECADE/N (default: as-measured)')
     .option('--coverage <P>', 'coverage probability of expanded uncertainties (default: 0.95)')
+    .option('--budget <CSV>', 'systematic effects: name, u_db or half_width_db with distribution, applies_to, …')
     .option('--tolerance <DB>', 'effect of a partner that does not matter (default: 1)')
     .option('--risk <P>', 'chance that a set with nothing wrong gets a take flagged (default: 0.05)')
     .option('--settings <JSON>', 'repeat the run of a summary.json; options named here win')
@@ -54,6 +55,7 @@ const SHAPING = [
   'band',
   'grid',
   'coverage',
+  'budget',
   'tolerance',
   'risk',
 ] as const;

@@ -52,7 +52,9 @@ export async function openOutputFolder(name: string, options: OutputFolderOption
         try {
           for (const file of files) {
             onFile?.(file.name);
-            await writeOne(join(temporary, file.name), inBlocks(file.chunks()));
+            const path = join(temporary, file.name);
+            if (dirname(file.name) !== '.') await mkdir(dirname(path), { recursive: true });
+            await writeOne(path, inBlocks(file.chunks()));
           }
           const mode = statSync(target, { throwIfNoEntry: false })?.mode;
           if (mode !== undefined) await chmod(temporary, mode & 0o7777);

@@ -1,4 +1,4 @@
-import { accessSync, constants, lstatSync, readdirSync, readFileSync, statSync } from 'node:fs';
+import { accessSync, constants, type Dirent, lstatSync, readdirSync, readFileSync, statSync } from 'node:fs';
 import { lstat, realpath } from 'node:fs/promises';
 import { basename, dirname, join, resolve, sep } from 'node:path';
 import { InputError } from '../quantity/input-fault.ts';
@@ -20,7 +20,11 @@ const RESULT_FILES: ReadonlySet<string> = new Set([
   'unused.csv',
   'summary.json',
   'covariance.json',
+  'report.html',
 ]);
+
+/** The only folder in a result, and what its files end in. */
+const PICTURES = { folder: 'figures', ending: '.svg' };
 
 /** Full path of the folder named. Symbolic links are followed, so that what is replaced is the folder and not the link. */
 export async function targetOf(name: string): Promise<string> {
@@ -66,7 +70,7 @@ export function refuseOccupied(name: string, target: string, replaceResult: bool
   }
   const entries = readdirSync(target, { withFileTypes: true });
   if (entries.length === 0) return 'empty';
-  const foreign = entries.filter((entry) => !entry.isFile() || !RESULT_FILES.has(entry.name)).map(({ name }) => name);
+  const foreign = entries.filter((entry) => !isOfResult(target, entry)).map(({ name }) => name);
   if (foreign.length > 0) {
     const more = foreign.length > 3 ? ` and ${foreign.length - 3} more` : '';
     throw refuse(name, `a folder with other things in it (${foreign.sort().slice(0, 3).join(', ')}${more})`);
@@ -77,6 +81,13 @@ export function refuseOccupied(name: string, target: string, replaceResult: bool
   if ((stat.mode & 0o222) === 0) throw refuse(name, 'an earlier result that is read-only');
   accessSync(target, constants.W_OK);
   return 'result';
+}
+
+function isOfResult(folder: string, entry: Dirent): boolean {
+  if (entry.isFile()) return RESULT_FILES.has(entry.name);
+  if (!entry.isDirectory() || entry.name !== PICTURES.folder) return false;
+  const pictures = readdirSync(join(folder, entry.name), { withFileTypes: true });
+  return pictures.every((picture) => picture.isFile() && picture.name.endsWith(PICTURES.ending));
 }
 
 function holdsSummary(folder: string): boolean {

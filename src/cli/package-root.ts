@@ -1,4 +1,5 @@
 import { readFileSync } from 'node:fs';
+import { readFile } from 'node:fs/promises';
 import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 
@@ -27,6 +28,11 @@ export function installedPackage(): Package {
     if (above === folder) throw new Error('the package.json of oddloop is not above its code');
     folder = above;
   }
+}
+
+/** Text of the report page's program, as the build has bundled it. */
+export function pageScript(): Promise<string> {
+  return readFile(join(installedPackage().root, 'dist', 'report-page.js'), 'utf8');
 }
 
 function manifestIn(folder: string): { readonly name: string; readonly version: string } | undefined {

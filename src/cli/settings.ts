@@ -24,6 +24,8 @@ export interface Settings {
   readonly band: string | null;
   readonly grid: string;
   readonly coverage: number;
+  /** File of systematic effects. */
+  readonly budget: string | null;
   /** Effect of a partner in dB that does not matter. */
   readonly tolerance: number;
   /** Chance that a clean set gets any take flagged. */
@@ -44,6 +46,7 @@ export const DEFAULT_SETTINGS: Settings = {
   band: null,
   grid: 'as-measured',
   coverage: 0.95,
+  budget: null,
   tolerance: DEFAULT_TOLERANCE,
   risk: DEFAULT_RISK,
 };
@@ -97,6 +100,7 @@ const RULES: { readonly [Name in keyof Settings]: Rule<Settings[Name]> } = {
     example: '0.95',
     read: (value) => number(value, (p) => p > 0 && p < 1),
   },
+  budget: { expected: 'the name of a CSV file', example: 'budget.csv', read: orNull(name) },
   tolerance: {
     expected: 'an effect in dB, above 0',
     example: '1',

@@ -1,6 +1,7 @@
 import { examine } from '../findings/examine.ts';
 import { settle } from '../findings/settle.ts';
 import { buildModel } from '../model/build-model.ts';
+import { systematicEffects } from '../model/systematic-effects.ts';
 import { jsonText } from '../report/json-text.ts';
 import { outputFiles } from '../report/output-files.ts';
 import type { Result } from '../report/result.ts';
@@ -20,7 +21,7 @@ import {
 import { nothingApart } from './nothing-apart.ts';
 import type { Request } from './options.ts';
 import { openOutputFolder } from './output-folder.ts';
-import { installedPackage } from './package-root.ts';
+import { installedPackage, pageScript } from './package-root.ts';
 import { progressLine } from './progress.ts';
 import { textStyle, writeMessage, writeResult } from './terminal.ts';
 
@@ -38,10 +39,12 @@ export async function solveCommand(request: Request, folderName: string): Promis
     const set = gatherTakes(readings, gatherOptions(settings));
     const modelInputs = await readModelInputs(settings);
     const model = buildModel(set, modelInputs.options);
+    const effects = systematicEffects(set, modelInputs.budget);
     const onProgress = progress.step('solving');
     const settled = await settle(set, model, {
       givenUncertainty: settings.u ?? undefined,
       risk: settings.risk,
+      effects,
       onProgress,
     });
     const examination = examine(set, model, settled, settings);
@@ -57,7 +60,10 @@ export async function solveCommand(request: Request, folderName: string): Promis
       solution: settled.solution,
       examination,
     };
-    await folder.write(outputFiles(result), (name) => progress.step(`writing ${name}`));
+    // Loaded only now: drawing takes packages that reading and solving have no use for.
+    const { pageFiles } = await import('../report/page/page-files.ts');
+    const files = [...outputFiles(result), ...pageFiles(result, await pageScript())];
+    await folder.write(files, (name) => progress.step(`writing ${name}`));
     progress.clear();
     for (const sentence of changedFiles(result.input, earlier)) writeMessage(sentence);
     await writeResult(answer(result, request, folderName));

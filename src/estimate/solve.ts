@@ -8,6 +8,7 @@ import type { ReadingScatter } from './reading-scatter.ts';
 import { readingUncertainty } from './reading-uncertainty.ts';
 import { residualScatter } from './residual-scatter.ts';
 import type { ReadingUncertainty, Solution } from './solution.ts';
+import { paddedUses, withMoreLinks, withoutSeatingLinks, withSeatingLinks } from './shared-seatings.ts';
 import { solutionOf } from './solution-of.ts';
 import { type Sweep, sweep } from './sweep.ts';
 
@@ -49,11 +50,7 @@ async function solveAll(set: TakeSet, model: Model, options: SolveOptions): Prom
   const patterns = findPatterns(set, model);
   const known = readingUncertainty(set, options.givenUncertainty);
   const pass = passWith(set, model, patterns, options.onProgress);
-  if (options.scatter !== undefined) {
-    const { total, independent, uses } = options.scatter;
-    const swept = await pass(independent);
-    return solutionOf(set, model, patterns, swept, scatterStatement(set, total, independent), { uses, effects });
-  }
+  if (options.scatter !== undefined) return solveScattered(set, model, patterns, options.scatter, options);
   if (known !== undefined) return solutionOf(set, model, patterns, await pass(known.values), known, { effects });
 
   let swept = await pass(new Float64Array(set.levels.length).fill(Number.NaN));
@@ -66,6 +63,30 @@ async function solveAll(set: TakeSet, model: Model, options: SolveOptions): Prom
     if (settled) break;
   }
   return solutionOf(set, model, patterns, swept, learnt, { effects });
+}
+
+/** Solves with readings that share seatings and partners; seatings that serve several pairs are links of their own for it. */
+async function solveScattered(
+  set: TakeSet,
+  model: Model,
+  patterns: Patterns,
+  scatter: ReadingScatter,
+  { effects, onProgress }: SolveOptions,
+): Promise<Solution> {
+  const { total, independent, uses, shared, sharedDeviation } = scatter;
+  const statement = scatterStatement(set, total, independent);
+  const count = shared.seatings.length;
+  if (count === 0) {
+    const swept = await passWith(set, model, patterns, onProgress)(independent);
+    return { ...solutionOf(set, model, patterns, swept, statement, { uses, effects }), scatter };
+  }
+  const wider = withSeatingLinks(model, shared, sharedDeviation);
+  const morePatterns = withMoreLinks(patterns, count);
+  const swept = await passWith(set, wider, morePatterns, onProgress)(independent);
+  const n = model.linksPerFrequency;
+  const wide = solutionOf(set, wider, morePatterns, swept, statement, { uses: paddedUses(uses, n, count), effects });
+  const solution = { ...withoutSeatingLinks(wide, n, count), patterns: patterns.patterns, scatter };
+  return withDofOfParts(set, model, solution);
 }
 
 function scatterStatement(set: TakeSet, total: Float64Array, independent: Float64Array): ReadingUncertainty {

@@ -1,8 +1,11 @@
 import { type FrequencyRange, frequencyText } from '../quantity/frequency.ts';
 import { InputError, type InputFault } from '../quantity/input-fault.ts';
 import type { Readings, UnusedRow } from '../readings/readings.ts';
+import { averagedReadings, type UncertaintyOrigin } from './averaged-readings.ts';
 import { type FrequencyTable, frequencyTable, SAME_FREQUENCY } from './frequency-table.ts';
 import { type Spectrum, toOctaveBands, toPointsPerDecade } from './regrid.ts';
+import { resolutionOf } from './resolution.ts';
+import { only, subtractNoise } from './subtract-noise.ts';
 import type { Grid, Take, TakeSet } from './take-set.ts';
 import { type TakeSpectra, takeSpectra } from './take-spectra.ts';
 
@@ -16,20 +19,55 @@ export interface GatherOptions {
 const LARGEST_TABLE = 2 ** 26;
 
 /**
- * Brings all takes to one frequency grid.
+ * Takes background noise off the levels, gives readings the uncertainty that averages and coherence tell, and brings all
+ * takes to one frequency grid.
  * A frequency that comes twice in a take is an input fault, since nobody can tell which reading is meant.
  * Cost: linear in the readings.
  */
 export function gatherTakes(readings: Readings, options: GatherOptions): TakeSet {
   const notices: string[] = [];
-  const used = options.band === undefined ? readings : withinBand(readings, options.band, notices);
-  const spectra = takeSpectra(used);
-  const table = frequencyTable(used.frequency);
-  refuseRepeatedFrequencies(used, spectra, table);
-  sayWhatIsNotUsed(used, notices);
+  const inBand = options.band === undefined ? readings : withinBand(readings, options.band, notices);
+  refuseRepeatedFrequencies(inBand, takeSpectra(inBand), frequencyTable(inBand.frequency));
+  const corrected = correctedReadings(inBand, notices);
   const takes = readings.takes.map((header, t): Take => ({ ...header, id: takeId(t, readings.takes.length) }));
-  if (options.grid.kind === 'as measured') return asMeasured(used, takes, spectra, table, notices);
-  return regridded(used, takes, spectra, options.grid, notices);
+  return options.grid.kind === 'as measured'
+    ? asMeasured(corrected, takes, notices)
+    : regridded(corrected, takes, options.grid, notices);
+}
+
+/** Readings as they are to be used, in the order of takes and frequencies. */
+interface Corrected {
+  readonly readings: Readings;
+  readonly spectra: TakeSpectra;
+  readonly origin: UncertaintyOrigin | undefined;
+  readonly noiseFactor: Float64Array | undefined;
+  readonly resolution: number | undefined;
+  readonly unused: readonly UnusedRow[];
+}
+
+function correctedReadings(readings: Readings, notices: string[]): Corrected {
+  const averaged = averagedReadings(readings);
+  const { readings: used, factor, unused, notices: ofNoise } = subtractNoise(averaged.readings);
+  notices.push(...averaged.notices, ...ofNoise);
+  if (used.count === 0 && readings.count > 0) {
+    throw new InputError([
+      {
+        place: { file: readings.files[0]?.name ?? 'input', column: 'noise_db' },
+        found: 'no reading that stands 3 dB above its background noise',
+        expected: 'levels above the noise',
+        remedy: 'Check that `noise_db` is on the scale of the levels, or leave it out.',
+      },
+    ]);
+  }
+  const uncertainty = factor && used.uncertainty ? used.uncertainty.map((u, i) => u * factor[i]!) : used.uncertainty;
+  return {
+    readings: { ...used, uncertainty },
+    spectra: takeSpectra(used),
+    origin: averaged.origin,
+    noiseFactor: factor,
+    resolution: resolutionOf(readings.level),
+    unused,
+  };
 }
 
 function takeId(index: number, count: number): string {
@@ -57,34 +95,7 @@ function withinBand(readings: Readings, band: FrequencyRange, notices: string[])
   if (keep.length < readings.count) {
     notices.push(`${readings.count - keep.length} readings outside ${range} were left out, as --band asks.`);
   }
-  const pick = (values: Float64Array | undefined) => values && Float64Array.from(keep, (i) => values[i]!);
-  return {
-    ...readings,
-    count: keep.length,
-    take: Int32Array.from(keep, (i) => readings.take[i]!),
-    line: Int32Array.from(keep, (i) => readings.line[i]!),
-    frequency: Float64Array.from(keep, (i) => readings.frequency[i]!),
-    level: Float64Array.from(keep, (i) => readings.level[i]!),
-    uncertainty: pick(readings.uncertainty),
-    averages: pick(readings.averages),
-    coherence: pick(readings.coherence),
-    noise: pick(readings.noise),
-  };
-}
-
-/** Columns that are kept and change nothing: one sentence each. */
-const NOT_USED = [
-  ['noise', 'noise_db', 'no background noise is taken off a level'],
-  ['averages', 'averages', 'no uncertainty is made of it'],
-  ['coherence', 'coherence', 'no uncertainty is made of it'],
-] as const;
-
-function sayWhatIsNotUsed(readings: Readings, notices: string[]): void {
-  for (const [name, title, instead] of NOT_USED) {
-    const given = readings[name]?.reduce((count, value) => count + (Number.isNaN(value) ? 0 : 1), 0) ?? 0;
-    if (given > 0)
-      notices.push(`${title} is given for ${given} of ${readings.count} readings and not used: ${instead}.`);
-  }
+  return only(readings, keep);
 }
 
 function refuseRepeatedFrequencies(readings: Readings, spectra: TakeSpectra, table: FrequencyTable): void {
@@ -106,12 +117,11 @@ function refuseRepeatedFrequencies(readings: Readings, spectra: TakeSpectra, tab
 }
 
 function asMeasured(
-  readings: Readings,
+  { readings, spectra, origin, noiseFactor, resolution, unused }: Corrected,
   takes: readonly Take[],
-  spectra: TakeSpectra,
-  table: FrequencyTable,
   notices: string[],
 ): TakeSet {
+  const table = frequencyTable(readings.frequency);
   const width = table.frequencies.length;
   refuseLargeTable(readings, takes.length * width);
   const spread = (values: Float64Array | undefined) => {
@@ -131,11 +141,11 @@ function asMeasured(
     frequencies: table.frequencies,
     levels: spread(readings.level)!,
     uncertainty: spread(readings.uncertainty),
-    averages: spread(readings.averages),
-    coherence: spread(readings.coherence),
-    noise: spread(readings.noise),
+    uncertaintyOrigin: origin,
+    noiseFactor: spread(noiseFactor),
+    resolution,
     grid: { kind: 'as measured' },
-    unused: [],
+    unused,
     notices,
   };
 }
@@ -148,13 +158,14 @@ function sharedFrequencies(readings: Readings, spectra: TakeSpectra, table: Freq
 }
 
 function regridded(
-  readings: Readings,
+  { readings, spectra, origin, noiseFactor, unused: tooNoisy }: Corrected,
   takes: readonly Take[],
-  spectra: TakeSpectra,
   grid: Exclude<Grid, { kind: 'as measured' }>,
   notices: string[],
 ): TakeSet {
-  const unused: UnusedRow[] = [];
+  const unused: UnusedRow[] = [...tooNoisy];
+  const onGrid = (spectrum: Spectrum) =>
+    grid.kind === 'octave bands' ? toOctaveBands(spectrum, grid.fraction) : toPointsPerDecade(spectrum, grid.points);
   const spectraOnGrid = takes.map((take, t) => {
     const own = spectra.order.subarray(spectra.start[t], spectra.start[t + 1]);
     const column = (values: Float64Array | undefined) =>
@@ -164,8 +175,7 @@ function regridded(
       level: column(readings.level),
       uncertainty: column(readings.uncertainty),
     };
-    const result =
-      grid.kind === 'octave bands' ? toOctaveBands(spectrum, grid.fraction) : toPointsPerDecade(spectrum, grid.points);
+    const result = onGrid(spectrum);
     if (result.empty > 0 || result.frequency.length === 0) {
       unused.push({
         file: take.file,
@@ -178,7 +188,13 @@ function regridded(
             : 'points in a hole of the take are left empty: nothing is interpolated across it',
       });
     }
-    return result;
+    // Equal uncertainties of 1 dB with the factors and without them show what the factors make of a grid point.
+    const ones = spectrum.level.map(() => 1);
+    const factor = noiseFactor && {
+      with: onGrid({ ...spectrum, uncertainty: column(noiseFactor) }).uncertainty,
+      without: onGrid({ ...spectrum, uncertainty: ones }).uncertainty,
+    };
+    return { ...result, factor: factor?.with.map((u, k) => u / factor.without[k]!) };
   });
   const table = frequencyTable(Float64Array.from(spectraOnGrid.flatMap((spectrum) => spectrum.frequency)));
   const width = table.frequencies.length;
@@ -194,13 +210,16 @@ function regridded(
   }
   refuseLargeTable(readings, takes.length * width);
   const levels = new Float64Array(takes.length * width).fill(Number.NaN);
-  const uncertainty = readings.uncertainty && new Float64Array(levels.length).fill(Number.NaN);
+  const empty = () => new Float64Array(levels.length).fill(Number.NaN);
+  const uncertainty = readings.uncertainty && empty();
+  const factors = noiseFactor && empty();
   let next = 0;
   spectraOnGrid.forEach((spectrum, t) => {
     spectrum.level.forEach((level, k) => {
       const cell = t * width + table.indexOf[next++]!;
       levels[cell] = level;
       if (uncertainty !== undefined) uncertainty[cell] = spectrum.uncertainty[k]!;
+      if (factors !== undefined) factors[cell] = spectrum.factor![k]!;
     });
   });
   return {
@@ -208,9 +227,8 @@ function regridded(
     frequencies: table.frequencies,
     levels,
     uncertainty,
-    averages: undefined,
-    coherence: undefined,
-    noise: undefined,
+    uncertaintyOrigin: origin,
+    noiseFactor: factors,
     grid,
     unused,
     notices,

@@ -125,28 +125,89 @@ describe('a chosen band', () => {
   });
 });
 
-describe('columns that change nothing yet', () => {
-  const given = (more: Partial<Readings>, grid: Grid = AS_MEASURED) => {
-    const rows = Array.from({ length: 100 }, (_, k) => [800 + 5 * k, -20] as const);
-    return gatherTakes({ ...readingsMade([{ rows }]), ...more }, { grid, band: undefined }).notices;
-  };
-  const values = Float64Array.from({ length: 100 }, (_, k) => (k < 30 ? 0.9 : Number.NaN));
-  const saying = [
-    'noise_db is given for 30 of 100 readings and not used: no background noise is taken off a level.',
-    'averages is given for 30 of 100 readings and not used: no uncertainty is made of it.',
-    'coherence is given for 30 of 100 readings and not used: no uncertainty is made of it.',
-  ];
+describe('background noise', () => {
+  const rows = [
+    [1000, -20],
+    [2000, -20],
+    [3000, -20],
+    [4000, -20],
+  ] as const;
+  const noise = Float64Array.of(-26, -22.5, -10, Number.NaN);
+  const gathered = (more: Partial<Readings>, grid: Grid = AS_MEASURED) =>
+    gatherTakes({ ...readingsMade([{ rows }]), noise, ...more }, { grid, band: undefined });
 
-  it('are named in one notice each, on every grid', () => {
-    const all = { noise: values, averages: values, coherence: values };
-    expect(given(all)).toEqual(saying);
-    expect(given(all, { kind: 'octave bands', fraction: 3 })).toEqual(saying);
-    expect(given({ noise: values })).toEqual(saying.slice(0, 1));
+  it('is taken off the level; a reading too close to it is unused, with line, value and reason', () => {
+    const set = gathered({});
+    expect([...set.frequencies]).toEqual([1000, 4000]);
+    expect(set.levels[0]).toBeCloseTo(-21.256276, 6);
+    expect(set.levels[1]).toBe(-20);
+    expect(set.unused).toEqual([
+      {
+        file: 'bench.csv',
+        line: 3,
+        column: 'noise_db',
+        value: '-22.5',
+        reason: 'background noise only 2.5 dB below the level: under 3 dB, too little is left to subtract it',
+      },
+      {
+        file: 'bench.csv',
+        line: 4,
+        column: 'noise_db',
+        value: '-10',
+        reason: 'background noise at or above the level: the level is that of the noise',
+      },
+    ]);
+    expect(set.notices).toContain('Background noise (noise_db) was subtracted from 1 of 4 readings, at most 1.3 dB.');
   });
 
-  it('are not named where nothing is in them', () => {
-    expect(given({})).toEqual([]);
-    expect(given({ noise: new Float64Array(100).fill(Number.NaN) })).toEqual([]);
+  it('makes the uncertainty of a reading grow, on every grid', () => {
+    const uncertainty = Float64Array.of(0.1, 0.1, 0.1, 0.1);
+    // At 6 dB: √(1.335450² + 0.335450²).
+    const grown = Math.hypot(1.33545, 0.33545);
+    expect(gathered({ uncertainty }).uncertainty![0]).toBeCloseTo(0.1 * grown, 6);
+    const points = gathered({ uncertainty }, { kind: 'per decade', points: 1 });
+    expect(points.uncertainty![0]).toBeCloseTo(0.1 * grown, 6);
+    expect(points.noiseFactor![0]).toBeCloseTo(grown, 6);
+  });
+
+  it('above every reading is an input fault', () => {
+    expect(() => gathered({ noise: new Float64Array(4).fill(0) })).toThrow(/no reading that stands 3 dB above/);
+  });
+});
+
+describe('averages and coherence', () => {
+  const rows = [
+    [1000, -20],
+    [2000, -20],
+    [3000, -20],
+  ] as const;
+  const gathered = (more: Partial<Readings>) =>
+    gatherTakes({ ...readingsMade([{ rows }]), ...more }, { grid: AS_MEASURED, band: undefined });
+  const NONE = Number.NaN;
+
+  it('give a reading its uncertainty where it has no u_db; a power spectrum is freed of its bias', () => {
+    const set = gathered({
+      averages: Float64Array.of(100, 100, 100),
+      coherence: Float64Array.of(NONE, 0.9, 0.9),
+      uncertainty: Float64Array.of(NONE, NONE, 0.3),
+    });
+    expect(set.uncertaintyOrigin).toBe('both');
+    expect(set.uncertainty![0]).toBeCloseTo(0.4353825, 6);
+    expect(set.uncertainty![1]).toBeCloseTo(0.2047284, 6);
+    expect(set.uncertainty![2]).toBe(0.3);
+    // ψ(100) − ln 100 = −1/200 − 1/120000 (NIST Digital Library of Mathematical Functions, 5.11.2), to 1e-9.
+    expect(set.levels[0]).toBeCloseTo(-20 + (10 / Math.LN10) * (1 / 200 + 1 / 120_000), 7);
+    expect([...set.levels.slice(1)]).toEqual([-20, -20]);
+    expect(set.notices).toHaveLength(3);
+  });
+
+  it('that tell nothing are named: a coherence of 1, a coherence without averages', () => {
+    const set = gathered({ averages: Float64Array.of(8, NONE, NONE), coherence: Float64Array.of(1, 0.9, NONE) });
+    expect(set.uncertainty).toBeUndefined();
+    expect(set.notices.map((notice) => notice.slice(0, 22))).toEqual([
+      'coherence is 1 for 1 o',
+      'coherence is given for',
+    ]);
   });
 });
 
