@@ -4,7 +4,7 @@ import type { Result } from './result.ts';
 
 /** Tests of the set as a whole, as a record for JSON: lack of fit, chi-square, level, reciprocity, loops. */
 export function agreementRecord({ examination, set }: Result): Readonly<Record<string, unknown>> {
-  const { levels, reciprocity, bands, loops } = examination;
+  const { changed, levels, reciprocity, bands, loops } = examination;
   const range = ({ from, to }: { readonly from: number; readonly to: number }) => ({
     from_hz: roundedFrequency(from),
     to_hz: roundedFrequency(to),
@@ -12,6 +12,15 @@ export function agreementRecord({ examination, set }: Result): Readonly<Record<s
   const ends = [...levels.bands.flatMap(({ upper, lower }) => [upper, lower]), ...levels.together, ...levels.takes];
   const bent = new Set(ends.filter(({ isShown }) => isShown).flatMap(({ takes }) => takes.map(({ take }) => take)));
   return {
+    changed_units: changed.map(({ unit, mount, from, order, shift, uncertainty, pValue }) => ({
+      unit,
+      mount: mount === '' ? null : mount,
+      from_take: set.takes[from]!.id,
+      order,
+      shift_db: jsonFigure(shift),
+      u_db: jsonFigure(uncertainty),
+      p_value: jsonFigure(pValue),
+    })),
     lack_of_fit: {
       pure_error_from: bands.pureErrorFrom,
       p_value: jsonFigure(bands.lackOfFitP),

@@ -1,5 +1,7 @@
 import type { BentTake } from '../findings/end-slope.ts';
 import type { JudgedEnd } from '../findings/level-misfit.ts';
+import { coverageFactor } from '../numeric/student-t.ts';
+import { roundedText } from '../quantity/rounding.ts';
 import type { Result } from './result.ts';
 import { bandText } from './wording.ts';
 
@@ -37,6 +39,18 @@ function bentTakes(ends: readonly JudgedEnd[]): BentTake[] {
     if (known === undefined || Math.abs(bent.misfit) > Math.abs(known.misfit)) worst.set(bent.take, bent);
   }
   return [...worst.values()].sort((a, b) => Math.abs(b.misfit) - Math.abs(a.misfit) || a.take - b.take);
+}
+
+/** Units that are not the same from some take on, each with advice. */
+export function changeSentences({ examination: { changed }, set, coverage }: Result): string[] {
+  return changed.map(({ unit, mount, from, order, shift, uncertainty, dof }) => {
+    const expanded = uncertainty * coverageFactor(coverage, dof);
+    const size = `${shift < 0 ? '−' : '+'}${roundedText(Math.abs(shift), expanded)} dB ± ${roundedText(expanded, expanded)} dB`;
+    const { id, takenAt, emitter, receiver } = set.takes[from]!;
+    const when = order === 'time' ? ` (${takenAt})` : ', in the order of the files';
+    const name = mount === '' ? unit : `${unit}@${mount}`;
+    return `${name} changed by ${size} from ${id}, ${emitter} > ${receiver}${when}, on. Look for what happened to it then: cable, mount, couplant, damage. If it is to count as two, give it two mount labels.`;
+  });
 }
 
 /** Bands in which emit and receive differ although the model holds them to be one; empty where there are none. */
