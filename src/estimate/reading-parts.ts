@@ -40,7 +40,8 @@ export type PartsAt = (link: number, f: number) => ReadingParts;
 export function readingParts(set: TakeSet, model: Model, solution: Solution): (block: CovarianceBlock) => PartsAt {
   const { scatter, readingUncertainty: reading } = solution;
   const count = scatter?.shared.seatings.length ?? 0;
-  const wider = scatter !== undefined && count > 0 ? withSeatingLinks(model, scatter.shared, scatter.sharedDeviation) : model;
+  const wider =
+    scatter !== undefined && count > 0 ? withSeatingLinks(model, scatter.shared, scatter.sharedDeviation) : model;
   const width = set.frequencies.length;
   const n = model.linksPerFrequency;
   const rows = wider.linksPerFrequency;
@@ -64,7 +65,9 @@ export function readingParts(set: TakeSet, model: Model, solution: Solution): (b
       }
       const parts = emptyParts(n);
       const { gains } = own;
-      takes.forEach((t, r) => addReading(parts, gains[r]!, set, t * width + f, single, source));
+      takes.forEach((t, r) => {
+        addReading(parts, gains[r]!, set, t * width + f, single, source);
+      });
       const level = scatter?.levelOf[f];
       if (level !== undefined) addScatter(parts, own, level);
       for (let s = 0; s < count; s++) {
@@ -177,12 +180,7 @@ function noiseFactorOf({ noiseFactor }: TakeSet, cell: number, source: ReadingUn
 }
 
 function addScatter(parts: ReadingParts, own: Contributions, { seating, partner }: LevelScatter): void {
-  const add = (
-    total: Part,
-    byEnd: Float64Array,
-    squares: Float64Array,
-    shares: Float64Array | undefined,
-  ): void => {
+  const add = (total: Part, byEnd: Float64Array, squares: Float64Array, shares: Float64Array | undefined): void => {
     if (shares === undefined) return;
     squares.forEach((square, end) => {
       const variance = square * shares[end]!;

@@ -2,6 +2,7 @@ import type { Patterns } from '../model/find-patterns.ts';
 import type { Chain, Link, Model } from '../model/model.ts';
 import type { TakeSet } from '../takes/take-set.ts';
 import type { ChainLayout } from './chain-groups.ts';
+import type { ScatterOfUses } from './reading-scatter.ts';
 import type { Solution } from './solution.ts';
 
 /** One seating of a unit in one role of its response that serves several pairs, or several seatings of its partner. */
@@ -134,9 +135,38 @@ export function withMoreLinks({ patterns, patternOf }: Patterns, count: number):
   };
 }
 
-/** A solution with seating links as one of the other links alone; what the seatings did to covariances stays beside them as `wide`. */
-export function withoutSeatingLinks(solution: Solution, n: number, count: number): Solution {
+/** Longer rows for the links of seatings, of which nothing is to be said. */
+export function paddedUses(uses: ScatterOfUses, n: number, count: number): ScatterOfUses {
+  const longer = (values: Float64Array) => {
+    const width = values.length / n;
+    const padded = new Float64Array(width * (n + count)).fill(Number.NaN);
+    for (let f = 0; f < width; f++) padded.set(values.subarray(f * n, (f + 1) * n), f * (n + count));
+    return padded;
+  };
+  const { seating, seatingDof, partner, partnerDof, dof } = uses;
+  return {
+    seating: longer(seating),
+    seatingDof: longer(seatingDof),
+    partner: longer(partner),
+    partnerDof: longer(partnerDof),
+    dof: longer(dof),
+  };
+}
+
+/**
+ * A solution with seating links as one of the other links alone. Residuals are those of the responses: what a seating was
+ * found to be stays in them, as it does for seatings that are not shared. What the seatings did to covariances stays beside
+ * them as `wide`.
+ */
+export function withoutSeatingLinks(solution: Solution, n: number, { seatings, ofTake }: SharedSeatings): Solution {
+  const count = seatings.length;
   const wide = n + count;
+  const width = solution.patternOf.length;
+  const residuals = solution.residuals.map((residual, cell) => {
+    const f = cell % width;
+    const own = ofTake[Math.floor(cell / width)]!;
+    return own.reduce((sum, s) => sum + solution.estimates[f * wide + n + s]!, residual);
+  });
   const cut = <Values extends Float64Array | Uint8Array>(values: Values): Values => {
     const kept = values.slice(0, (values.length / wide) * n) as Values;
     for (let f = 0; f < values.length / wide; f++) kept.set(values.subarray(f * wide, f * wide + n), f * n);
@@ -149,6 +179,7 @@ export function withoutSeatingLinks(solution: Solution, n: number, count: number
   };
   return {
     ...solution,
+    residuals,
     estimates: cut(solution.estimates),
     uncertainty: cut(solution.uncertainty),
     dof: cut(solution.dof),

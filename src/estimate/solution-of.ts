@@ -88,20 +88,13 @@ export function solutionOf(
     const redundancy = swept.redundancy[cell]!;
     if (!Number.isNaN(redundancy)) degreesOfFreedom[cell % width] = degreesOfFreedom[cell % width]! + redundancy;
   }
-  const own = { variance: uncertainty.map((u) => u * u), dof };
-  const seating = uses && { variance: uses.seating, dof: uses.seatingDof };
-  const reseat = otherUse(own, seating);
-  const partner = otherUse(own, uses && { variance: uses.partner, dof: uses.partnerDof }, seating);
   return {
     patterns: patterns.patterns,
     patternOf: patterns.patternOf,
     estimates,
     uncertainty,
     dof,
-    reseatUncertainty: reseat.uncertainty,
-    reseatDof: reseat.dof,
-    partnerUncertainty: partner.uncertainty,
-    partnerDof: partner.dof,
+    ...otherUses(uncertainty, dof, uses),
     status,
     residuals: swept.residuals,
     redundancy: swept.redundancy,
@@ -111,6 +104,24 @@ export function solutionOf(
     degreesOfFreedom,
     worstCondition: Math.max(0, ...swept.blocks.map(({ factored }) => factored.condition)),
     fallbacks: swept.blocks.filter(({ factored }) => factored.poor).length,
+  };
+}
+
+/** The uncertainties for the unit seated again, and on another partner. */
+export function otherUses(
+  uncertainty: Float64Array,
+  dof: Float64Array,
+  uses: ScatterOfUses | undefined,
+): Pick<Solution, 'reseatUncertainty' | 'reseatDof' | 'partnerUncertainty' | 'partnerDof'> {
+  const own = { variance: uncertainty.map((u) => u * u), dof };
+  const seating = uses && { variance: uses.seating, dof: uses.seatingDof };
+  const reseat = otherUse(own, seating);
+  const partner = otherUse(own, uses && { variance: uses.partner, dof: uses.partnerDof }, seating);
+  return {
+    reseatUncertainty: reseat.uncertainty,
+    reseatDof: reseat.dof,
+    partnerUncertainty: partner.uncertainty,
+    partnerDof: partner.dof,
   };
 }
 
@@ -211,7 +222,7 @@ function linkStatuses(
  * Effective degrees of freedom of a variance of which these parts were estimated and the rest is known.
  * Source: JCGM 100:2008, G.4.1 (Welch–Satterthwaite).
  */
-function effectiveDof(total: number, parts: readonly VariancePart[]): number {
+export function effectiveDof(total: number, parts: readonly VariancePart[]): number {
   if (Number.isNaN(total)) return Number.NaN;
   let spent = 0;
   for (const { variance, dof } of parts) if (variance > NO_PART * total) spent += variance ** 2 / dof;

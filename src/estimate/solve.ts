@@ -2,13 +2,14 @@ import { findPatterns, type Patterns } from '../model/find-patterns.ts';
 import type { Model } from '../model/model.ts';
 import type { SystematicEffect } from '../model/systematic-effects.ts';
 import type { TakeSet } from '../takes/take-set.ts';
+import { withDofOfParts } from './dof-of-parts.ts';
 import type { RankRevealingInverse } from './factor-block.ts';
 import { withLeftOutTakes } from './left-out-takes.ts';
 import type { ReadingScatter } from './reading-scatter.ts';
 import { readingUncertainty } from './reading-uncertainty.ts';
 import { residualScatter } from './residual-scatter.ts';
-import type { ReadingUncertainty, Solution } from './solution.ts';
 import { paddedUses, withMoreLinks, withoutSeatingLinks, withSeatingLinks } from './shared-seatings.ts';
+import type { ReadingUncertainty, Solution } from './solution.ts';
 import { solutionOf } from './solution-of.ts';
 import { type Sweep, sweep } from './sweep.ts';
 
@@ -85,7 +86,7 @@ async function solveScattered(
   const swept = await passWith(set, wider, morePatterns, onProgress)(independent);
   const n = model.linksPerFrequency;
   const wide = solutionOf(set, wider, morePatterns, swept, statement, { uses: paddedUses(uses, n, count), effects });
-  const solution = { ...withoutSeatingLinks(wide, n, count), patterns: patterns.patterns, scatter };
+  const solution = { ...withoutSeatingLinks(wide, n, shared), patterns: patterns.patterns, scatter };
   return withDofOfParts(set, model, solution);
 }
 

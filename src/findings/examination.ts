@@ -1,5 +1,6 @@
 import type { ScatterStep } from '../estimate/scatter-step.ts';
 import type { LinkStatus } from '../model/separability.ts';
+import type { ChangedUnit } from './changed-units.ts';
 import type { ExplainedTake } from './explanations.ts';
 import type { HoldFinding } from './holds.ts';
 import type { LevelMisfit } from './level-misfit.ts';
@@ -146,6 +147,8 @@ export interface Examination {
   readonly units: readonly UnitFinding[];
   readonly open: readonly OpenFinding[];
   readonly holds: readonly HoldFinding[];
+  /** Units whose level is another one from some take on, the surest first. */
+  readonly changed: readonly ChangedUnit[];
   /** The ladder of scatter, a third-octave band each. */
   readonly scatter: readonly ScatterStep[];
   /** Differences between mounts of one unit; empty where no unit has two. */

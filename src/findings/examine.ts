@@ -6,6 +6,7 @@ import type { Model } from '../model/model.ts';
 import { detectability } from '../numeric/detectability.ts';
 import { coverageFactors } from '../numeric/student-t.ts';
 import type { TakeSet } from '../takes/take-set.ts';
+import { changedUnits } from './changed-units.ts';
 import { checkingTake } from './checking-take.ts';
 import type {
   BandLevel,
@@ -47,6 +48,7 @@ export function examine(set: TakeSet, model: Model, settled: Settled, options: E
     pairs: pairFindings(set, takes),
     units: model.responses.map((_, response) => unitFinding(set, model, solution, response, factorOf)),
     open: [...openFindings(set, model, solution), ...gainFindings(model, solution)],
+    changed: changedUnits(set, model, screening.levels, options.risk),
     holds: holdFindings(model, screening.levels, options),
     mounts: mountDifferences(set, model, solution, factorOf),
     scatter: scatterLadder(set, model, solution, { ...options, exclude: settled.leftOut }),

@@ -37,7 +37,7 @@ export type ReadingLayout = 'long' | 'wide' | 'bench log' | 'take';
 /** An input file that was read. */
 export interface InputFile {
   readonly name: string;
-  readonly layout: ReadingLayout | 'references' | 'path levels' | 'budget';
+  readonly layout: ReadingLayout | 'references' | 'path levels' | 'budget' | 'result';
   readonly sha256: string;
   readonly bytes: number;
   /** Data rows, used or not. */
