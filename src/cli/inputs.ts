@@ -117,6 +117,20 @@ export function inputSummary(readings: Readings, set: TakeSet, modelInputs: Mode
   };
 }
 
+/** @throws InputError with each input file that is no longer what it was in the run that is repeated. */
+export function refuseChangedFiles({ files }: Pick<InputSummary, 'files'>, earlier: EarlierRun | undefined): void {
+  const changed = files.filter(({ name, sha256 }) => (earlier?.sha256.get(name) ?? sha256) !== sha256);
+  if (changed.length === 0) return;
+  throw new InputError(
+    changed.map(({ name }) => ({
+      place: { file: name },
+      found: 'a file that has changed since the result was made (its SHA-256 differs)',
+      expected: 'the file that the result was made from',
+      remedy: 'Put that file back, or solve the new one: oddloop solve --settings RESULT/summary.json --out NEW',
+    })),
+  );
+}
+
 /** One sentence for each input file that is no longer what it was in the run that is repeated. */
 export function changedFiles({ files }: Pick<InputSummary, 'files'>, earlier: EarlierRun | undefined): string[] {
   return files

@@ -5,6 +5,7 @@ import { addShapingOptions, readRequest } from './options.ts';
 import { installedPackage } from './package-root.ts';
 import { quietStreams, writeMessage, writeResult } from './terminal.ts';
 import { UsageError } from './usage-error.ts';
+import { addWhatifOptions, readWhatifRequest } from './whatif-options.ts';
 
 const EXIT_HELP = `
 Exit codes: 0 done, 2 wrong usage, 3 input that cannot be used or a place that
@@ -18,6 +19,30 @@ Examples:
   oddloop solve bench.csv --out result
   oddloop solve monday.csv tuesday.csv --out result --u 0.3 --grid 1/12
   oddloop solve --settings result/summary.json --out again
+${EXIT_HELP}`;
+
+const WHATIF_HELP = `
+Examples:
+  oddloop whatif --units 6 --budget-minutes 240 --sheet afternoon.csv
+  oddloop whatif --units 8 --pattern all,ring,triangles,hub
+  oddloop whatif plan.csv --add 3 --for worst
+  oddloop whatif --from result --add 4 --sheet more.csv
+${EXIT_HELP}`;
+
+const REPORT_HELP = `
+Start it in the folder in which RESULT was made: input files are looked for from
+there. Where one of them has changed since, nothing is replaced (exit code 3).
+
+Example:
+  oddloop report result
+${EXIT_HELP}`;
+
+const COMPARE_HELP = `
+Writes differences.csv, or matches.csv with --match, into RESULT.
+
+Examples:
+  oddloop compare result N01 N02
+  oddloop compare result --match 2 --within 0.5 --band '2 kHz..20 kHz'
 ${EXIT_HELP}`;
 
 /**
@@ -89,6 +114,60 @@ async function dispatch(argv: readonly string[]): Promise<number> {
       const request = readRequest(files, values, { writes: false, name: 'inspect' });
       const { inspectCommand } = await import('./inspect-command.ts');
       code = await inspectCommand(request);
+    });
+  addWhatifOptions(
+    program
+      .command('whatif')
+      .summary('plan the bench day: what designs will deliver, suggestions, run sheet')
+      .description('Says what designs will deliver before anything is mounted; suggests, orders and rehearses takes.'),
+  )
+    .addHelpText('after', WHATIF_HELP)
+    .action(async (designs: string[], values: Record<string, unknown>) => {
+      const request = readWhatifRequest(designs, values);
+      const { whatifCommand } = await import('./whatif-command.ts');
+      code = await whatifCommand(request);
+    });
+  program
+    .command('report')
+    .summary('make a result anew: report.html, its pictures and all tables')
+    .description('Repeats the run of RESULT from its summary.json and replaces RESULT: page, pictures and tables.')
+    .argument('<RESULT>', 'folder that solve wrote')
+    .option('--quiet', 'no summary and no progress')
+    .addHelpText('after', REPORT_HELP)
+    .action(async (folder: string, values: Record<string, unknown>) => {
+      const { reportCommand } = await import('./report-command.ts');
+      code = await reportCommand(folder, values.quiet === true);
+    });
+  program
+    .command('next')
+    .summary('after a run: the takes most worth adding, and what each buys')
+    .description('Repeats the run in RESULT and names the takes most worth adding, with what each buys.')
+    .argument('<RESULT>', 'folder that solve wrote')
+    .option('--target-db <U>', 'expanded uncertainty that the worst unit is to have')
+    .option('--band <LO..HI>', "bands that count, such as '2 kHz..80 kHz'")
+    .option('--most <N>', 'takes that may be added for the target (default: 20)')
+    .option('--json', 'print JSON instead of text')
+    .option('--quiet', 'no summary and no progress')
+    .addHelpText('after', `\nExample:\n  oddloop next result --target-db 0.5\n${EXIT_HELP}`)
+    .action(async (run: string, values: Record<string, unknown>) => {
+      const { nextCommand, readNextRequest } = await import('./next-command.ts');
+      code = await nextCommand(readNextRequest(run, values));
+    });
+  program
+    .command('compare')
+    .summary('differences between units of a result, and sets that match')
+    .description('Says by how much units of RESULT differ, with U; or which sets of units match within a tolerance.')
+    .argument('<RESULT>', 'folder that solve wrote')
+    .argument('[UNIT...]', 'units to compare, each with each; for --match the units to choose from (default: all)')
+    .option('--match <N>', 'list sets of N units that agree')
+    .option('--within <DB>', 'largest difference within such a set')
+    .option('--band <LO..HI>', "frequencies that count, such as '2 kHz..80 kHz'")
+    .option('--seed <N>', 'seed of the draws behind a probability (default: 1)')
+    .option('--quiet', 'no table on the terminal')
+    .addHelpText('after', COMPARE_HELP)
+    .action(async (result: string, units: string[], values: Record<string, unknown>) => {
+      const { compareCommand, readCompareRequest } = await import('./compare-command.ts');
+      code = await compareCommand(readCompareRequest(result, units, values));
     });
 
   try {

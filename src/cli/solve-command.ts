@@ -1,3 +1,4 @@
+import { uncertaintyBudget } from '../estimate/budget.ts';
 import { examine } from '../findings/examine.ts';
 import { settle } from '../findings/settle.ts';
 import { buildModel } from '../model/build-model.ts';
@@ -16,6 +17,7 @@ import {
   namedFiles,
   readMeasurements,
   readModelInputs,
+  refuseChangedFiles,
   settingsOf,
 } from './inputs.ts';
 import { nothingApart } from './nothing-apart.ts';
@@ -25,8 +27,13 @@ import { installedPackage, pageScript } from './package-root.ts';
 import { progressLine } from './progress.ts';
 import { textStyle, writeMessage, writeResult } from './terminal.ts';
 
+export interface SolveRun {
+  /** Whether an input file that is not what it was in the run that is repeated stops the run; a message only where absent. */
+  readonly mustBeUnchanged?: boolean;
+}
+
 /** The main job: reads the files, solves, writes all outputs to `folderName` and the summary to stdout. */
-export async function solveCommand(request: Request, folderName: string): Promise<number> {
+export async function solveCommand(request: Request, folderName: string, run: SolveRun = {}): Promise<number> {
   const { settings, earlier } = await settingsOf(request);
   const folder = await openOutputFolder(folderName, { replaceResult: true, inputs: namedFiles(settings) });
   const progress = progressLine(process.stderr, {
@@ -38,6 +45,8 @@ export async function solveCommand(request: Request, folderName: string): Promis
     const readings = await readMeasurements(settings, progress);
     const set = gatherTakes(readings, gatherOptions(settings));
     const modelInputs = await readModelInputs(settings);
+    const input = inputSummary(readings, set, modelInputs);
+    if (run.mustBeUnchanged) refuseChangedFiles(input, earlier);
     const model = buildModel(set, modelInputs.options);
     const effects = systematicEffects(set, modelInputs.budget);
     const onProgress = progress.step('solving');
@@ -54,10 +63,11 @@ export async function solveCommand(request: Request, folderName: string): Promis
       coverage: settings.coverage,
       risk: settings.risk,
       tolerance: settings.tolerance,
-      input: inputSummary(readings, set, modelInputs),
+      input,
       set,
       model,
       solution: settled.solution,
+      budget: uncertaintyBudget(set, model, settled.solution),
       examination,
     };
     // Loaded only now: drawing takes packages that reading and solving have no use for.
@@ -88,9 +98,10 @@ function ending({ examination, set }: Result, strict: boolean): number {
 }
 
 /** A take that disagrees, a tie, or a unit that does not hold. */
-function isSomethingFlagged({ takes, holds, whole }: Result['examination']): boolean {
+function isSomethingFlagged({ takes, holds, changed, whole }: Result['examination']): boolean {
   return (
     whole.isModelFailing ||
+    changed.length > 0 ||
     takes.some(({ verdict }) => verdict === 'flagged' || verdict === 'tied') ||
     holds.some(({ verdict }) => verdict === 'broken' || verdict === 'strained')
   );

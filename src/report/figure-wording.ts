@@ -77,7 +77,9 @@ export const figureTexts = {
     const sentences = (['broken', 'strained', 'not testable'] as const).flatMap((verdict) => {
       const concerned = holds.filter((unit) => bandsWith(unit, verdict) > 0);
       if (concerned.length === 0) return [];
-      const texts = concerned.map(({ name, runs }) => `${name} at ${bandsText(runs.filter((run) => run.verdict === verdict))}`);
+      const texts = concerned.map(
+        ({ name, runs }) => `${name} at ${bandsText(runs.filter((run) => run.verdict === verdict))}`,
+      );
       return [`${verdict[0]!.toUpperCase()}${verdict.slice(1)}: ${listText(texts)}.`];
     });
     const whole = holds.filter((unit) => unit.runs.every(({ verdict }) => verdict === 'holds'));
@@ -96,7 +98,9 @@ export const figureTexts = {
       const { low, high } = extremes(Float64Array.from(examination.scatter, (band) => band[step].sd));
       return `${step} ${roundedText(low, high)} to ${roundedText(high, high)} dB`;
     });
-    const mixed = examination.scatter.some(({ reseat, partner }) => reseat.includes.length + partner.includes.length > 0);
+    const mixed = examination.scatter.some(
+      ({ reseat, partner }) => reseat.includes.length + partner.includes.length > 0,
+    );
     return {
       title: 'What repeating, mounting again and another partner change',
       description: `Standard deviations in third-octave bands: ${listText(texts)}.`,
@@ -109,7 +113,9 @@ export const figureTexts = {
 
   residuals(result: Result, cells: ResidualCells, steps: ResidualSteps): FigureTexts {
     const { set, examination } = result;
-    const named = [...flaggedTakes(examination), ...tieGroups(examination).flat()].map(({ take }) => takeName(set.takes[take]!));
+    const named = [...flaggedTakes(examination), ...tieGroups(examination).flat()].map(({ take }) =>
+      takeName(set.takes[take]!),
+    );
     const grouped = [
       ...(cells.rows.length < set.takes.length ? [`${set.takes.length} takes in ${cells.rows.length} rows`] : []),
       ...(cells.columns.length < set.frequencies.length
@@ -119,7 +125,9 @@ export const figureTexts = {
     const notes = [
       'Reading less fit; takes in the order of the files. Striped: below the fit. A row of one colour is a shift; a spot, a local fault; a column, a frequency at which the model itself fits badly.',
       ...(grouped.length > 0
-        ? [`There are ${listText(grouped)}; each cell shows its reading farthest from 0, so that the worst is never lost.`]
+        ? [
+            `There are ${listText(grouped)}; each cell shows its reading farthest from 0, so that the worst is never lost.`,
+          ]
         : []),
     ];
     const description = `Residual of ${counted(set.takes.length, 'take')} over frequency, coloured from ${steps[0]} dB on. ${named.length === 0 ? 'No take disagrees.' : `Takes that disagree: ${listText(named, FEW_NAMES)}.`} ${notes.slice(1).join(' ')}`;
@@ -145,13 +153,28 @@ export const figureTexts = {
     const { loops, leftOut, beyondLimit } = examination.loops;
     const share = percentText(1 - coverage);
     const listed = beyondLimit > 0 ? ` ${beyondLimit} further loops are not listed.` : '';
-    const other = leftOut > 0 ? ` ${counted(leftOut, 'sum')} in which paths or gains cancel only along long walks are not listed.` : '';
+    const other =
+      leftOut > 0
+        ? ` ${counted(leftOut, 'sum')} in which paths or gains cancel only along long walks are not listed.`
+        : '';
     return {
       title: 'Alternating sums that must be zero',
       description: `${counted(loops.length, 'loop')} by third-octave band: ${beyond} of ${dots} closures are beyond their limit; by chance about ${share} would be.${listed}${other}`,
       notes: [
-        `A loop is an even closed walk through the pairs; its levels, added and subtracted in turn, give 0 whatever the units are. ${beyond} of ${dots} closures are beyond their limit of ±U (${percentText(coverage)}); where nothing is wrong about ${share} would be. New seatings and partners are not in U; takes that disagree are.${listed}${other}`,
+        `A loop is an even closed walk through the pairs; its levels, added and subtracted in turn, give 0 whatever the units are. ${beyond} of ${dots} closures are beyond their limit of ±U (${percentText(coverage)}); where nothing is wrong about ${share} would be. U holds what the readings scatter by, not what mounting anew and other partners add (see Scatter): where they add much, more closures are beyond. Takes that disagree are in the sums, so that they show.${listed}${other}`,
       ],
+    };
+  },
+
+  budget({ budget = [] }: Result, sources: readonly string[]): FigureTexts {
+    const shares = sources.map((source) => {
+      const own = budget.map(({ parts }) => parts.find((part) => part.source === source)?.share ?? 0);
+      return `${source} up to ${percentText(Number(Math.max(0, ...own).toFixed(2)))}`;
+    });
+    return {
+      title: 'What the uncertainty is made of',
+      description: `Parts of the variance of each response as seated, by third-octave band: ${listText(shares)}.`,
+      notes: ['Of the level as seated; variances add, so that the parts fill the whole. Letters as in the legend.'],
     };
   },
 
@@ -160,7 +183,7 @@ export const figureTexts = {
       title: 'Expanded uncertainty for three uses',
       description: `Expanded uncertainty of each unit over frequency, ${listText(shown)}, on one scale.`,
       notes: [
-        `${percentText(coverage)}. As seated: the mean over what was seen here. Seated again: the unit mounted once more. Other partner: mounted against another unit as well. What shows of each colour is what that use adds.`,
+        `${percentText(coverage)}. As seated: the mean over what was seen here. Seated again: the unit mounted once more. Other partner: mounted against another unit as well. The ground between two curves is what that use adds. One scale for all, logarithmic.`,
       ],
     };
   },

@@ -40,6 +40,19 @@ export function unitHolds(holds: readonly HoldFinding[]): UnitHold[] {
   return [...units.values()];
 }
 
+/** Bands in order, neighbours joined. */
+export function joinedBands(
+  bands: readonly { readonly from: number; readonly to: number }[],
+): { from: number; to: number }[] {
+  const joint: { from: number; to: number }[] = [];
+  for (const { from, to } of bands) {
+    const last = joint.at(-1);
+    if (last?.to === from) last.to = to;
+    else joint.push({ from, to });
+  }
+  return joint;
+}
+
 /** How many bands of a unit have one of the verdicts. */
 export function bandsWith({ runs }: UnitHold, ...verdicts: readonly HoldFinding['verdict'][]): number {
   return runs.filter(({ verdict }) => verdicts.includes(verdict)).reduce((sum, { bands }) => sum + bands, 0);

@@ -1,7 +1,7 @@
 import { failingBands } from '../findings/failing-bands.ts';
 import type { HoldFinding } from '../findings/holds.ts';
 import { roundedText } from '../quantity/rounding.ts';
-import { bandsWith, type HeldRun, type UnitHold, unitHolds } from './held-bands.ts';
+import { bandsWith, type HeldRun, joinedBands, type UnitHold, unitHolds } from './held-bands.ts';
 import type { Result } from './result.ts';
 import { bandText, counted, FEW_NAMES, listText, type Statement } from './wording.ts';
 
@@ -28,17 +28,7 @@ export function holdsCell(hold: UnitHold | undefined): string {
 
 /** `56–71 kHz and 89–110 kHz`; neighbours are joined. */
 export function bandsText(runs: readonly { readonly from: number; readonly to: number }[]): string {
-  return listText(joined(runs).map(bandText), FEW_NAMES);
-}
-
-function joined(runs: readonly { readonly from: number; readonly to: number }[]): { from: number; to: number }[] {
-  const joint: { from: number; to: number }[] = [];
-  for (const { from, to } of runs) {
-    const last = joint.at(-1);
-    if (last?.to === from) last.to = to;
-    else joint.push({ from, to });
-  }
-  return joint;
+  return listText(joinedBands(runs).map(bandText), FEW_NAMES);
 }
 
 /** Where mounting independence holds and where it breaks. */

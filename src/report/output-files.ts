@@ -1,3 +1,4 @@
+import { budgetTable } from './budget-table.ts';
 import { covarianceFile } from './covariance-json.ts';
 import { holdsTable } from './holds-table.ts';
 import { jsonText } from './json-text.ts';
@@ -23,6 +24,7 @@ export function outputFiles(result: Result): OutputFile[] {
     scatterTable(result),
     holdsTable(result),
     mountsTable(result),
+    ...(result.budget === undefined ? [] : [budgetTable(result, result.budget)]),
     unusedTable(result),
     { name: 'summary.json', chunks: () => [jsonText(summaryRecord(result))] },
     covarianceFile(result),

@@ -1,3 +1,4 @@
+import type { ResponseBudget } from '../estimate/budget.ts';
 import type { Solution } from '../estimate/solution.ts';
 import type { Examination, OpenFinding } from '../findings/examination.ts';
 import type { Patterns } from '../model/find-patterns.ts';
@@ -31,6 +32,8 @@ export interface Result {
   readonly set: TakeSet;
   readonly model: Model;
   readonly solution: Solution;
+  /** Where the uncertainty of each response comes from; absent where nobody asked. */
+  readonly budget?: readonly ResponseBudget[];
   readonly examination: Examination;
 }
 

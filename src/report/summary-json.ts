@@ -1,6 +1,7 @@
 import type { UnitFinding } from '../findings/examination.ts';
 import { agreementRecord } from './agreement-json.ts';
 import { benchCounts } from './bench-counts.ts';
+import { budgetRecord } from './budget-json.ts';
 import { availability, jsonFigure, jsonLevel } from './json-text.ts';
 import { roundedFrequency } from './number-text.ts';
 import { placedUnit } from './response-name.ts';
@@ -42,6 +43,7 @@ export function summaryRecord(result: Result): Readonly<Record<string, unknown>>
         dof: jsonFigure(band.dof),
       })),
     },
+    budget: budgetRecord(result),
     whole: {
       degrees_of_freedom: jsonFigure(whole.degreesOfFreedom),
       rms_residual_db: jsonLevel(whole.rmsResidual),

@@ -1,7 +1,8 @@
 import type { UnitFinding } from '../findings/examination.ts';
 import { roundedText } from '../quantity/rounding.ts';
-import { levelSentences, reciprocitySentences } from './agreement-wording.ts';
+import { changeSentences, levelSentences, reciprocitySentences } from './agreement-wording.ts';
 import { benchCounts } from './bench-counts.ts';
+import { budgetSentence } from './budget-json.ts';
 import { bandsWith, unitHolds } from './held-bands.ts';
 import { dependenceSentences, holdsCell } from './hold-wording.ts';
 import { openSentence } from './open-wording.ts';
@@ -113,10 +114,11 @@ function uncertaintyCell(expanded: number): string {
 }
 
 /** What the figures rest on. */
-function basisLines({ model, solution }: Result): string[] {
+function basisLines({ model, solution, budget = [] }: Result): string[] {
   const sentences = [
     ...modelSentences(model),
     solution.readingUncertainty.statement,
+    budgetSentence({ budget }),
     gainSentence({ model, solution }),
   ];
   return sentences.filter((sentence) => sentence !== '').flatMap((sentence) => wrapped(sentence));
@@ -169,8 +171,8 @@ function capped(sentences: readonly string[], name: string, file: string): strin
 
 function agreementLines(result: Result, style: TextStyle): string[] {
   return listed(
-    'What depends on level or direction',
-    [...levelSentences(result), ...reciprocitySentences(result)],
+    'What depends on time, level or direction',
+    [...changeSentences(result), ...levelSentences(result), ...reciprocitySentences(result)],
     style,
   );
 }
