@@ -69,7 +69,7 @@ function whereToLook(folder: string): string {
     `  ${join(folder, 'README.md')}  what the bench was, and what is hidden in the takes`,
     `  ${join(folder, 'pairs.csv')}  the takes, a row a reading`,
     `  ${join(folder, 'truth.json')}  the responses it was made from, to compare with`,
-    `  ${join(folder, 'result')}  what oddloop makes of it`,
+    `  ${join(folder, 'result')}  what oddloop makes of it: open report.html in a browser`,
     '',
   ].join('\n');
 }

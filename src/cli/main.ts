@@ -8,8 +8,9 @@ import { UsageError } from './usage-error.ts';
 import { addWhatifOptions, readWhatifRequest } from './whatif-options.ts';
 
 const EXIT_HELP = `
-Exit codes: 0 done, 2 wrong usage, 3 input that cannot be used or a place that
-cannot be written, 4 nothing can be told apart, 70 a defect of the program.`;
+Exit codes: 0 done, 1 done and something was flagged (with --strict), 2 wrong
+usage, 3 input that cannot be used or a place that cannot be written, 4 nothing
+can be told apart, 70 a defect of the program.`;
 
 const SOLVE_HELP = `
 DIR is new, empty, or an earlier result, which is then replaced; it is complete

@@ -11,7 +11,7 @@ import { repeatRun, runBands } from './repeat-run.ts';
 import { ended } from './solve-command.ts';
 import { textStyle, writeResult } from './terminal.ts';
 import { UsageError } from './usage-error.ts';
-import { bandOf, type Say } from './whatif-options.ts';
+import { bandOf, type Say } from './whatif-values.ts';
 
 export interface NextRequest {
   /** Folder of the run. */

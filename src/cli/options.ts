@@ -32,6 +32,8 @@ export function addShapingOptions(command: Command): Command {
     .option('--grid <GRID>', '1/3, 1/6, 1/12, 1/24, as-measured or DECADE/N (default: as-measured)')
     .option('--coverage <P>', 'coverage probability of expanded uncertainties (default: 0.95)')
     .option('--budget <CSV>', 'systematic effects: name, u_db or half_width_db with distribution, applies_to, …')
+    .option('--monte-carlo <N>', 'check the uncertainties with N draws through the whole solution')
+    .option('--seed <N>', 'seed of the draws (default: 1)')
     .option('--tolerance <DB>', 'effect of a partner that does not matter (default: 1)')
     .option('--risk <P>', 'chance that a set with nothing wrong gets a take flagged (default: 0.05)')
     .option('--settings <JSON>', 'repeat the run of a summary.json; options named here win')
@@ -56,6 +58,7 @@ const SHAPING = [
   'grid',
   'coverage',
   'budget',
+  'seed',
   'tolerance',
   'risk',
 ] as const;
@@ -71,7 +74,7 @@ export function readRequest(
   values: Readonly<Record<string, unknown>>,
   { writes, name }: { readonly writes: boolean; readonly name: string },
 ): Request {
-  const typed: Record<string, unknown> = { 'loose-gain': values.looseGain };
+  const typed: Record<string, unknown> = { 'loose-gain': values.looseGain, 'monte-carlo': values.monteCarlo };
   for (const option of SHAPING) typed[option] = values[option];
   if (Array.isArray(typed.reversible)) typed.reversible = typed.reversible.join(',');
   const { accepted, troubles } = checkSettings(typed);

@@ -26,11 +26,18 @@ export interface Settings {
   readonly coverage: number;
   /** File of systematic effects. */
   readonly budget: string | null;
+  /** Draws of a Monte Carlo check; none where it is not asked for. */
+  readonly 'monte-carlo': number | null;
+  /** Seed of all draws. */
+  readonly seed: number;
   /** Effect of a partner in dB that does not matter. */
   readonly tolerance: number;
   /** Chance that a clean set gets any take flagged. */
   readonly risk: number;
 }
+
+/** Fewer draws tell no interval of 95 %; more take hours. Common practice, no source. */
+const DRAWS = { least: 1000, most: 10_000_000 } as const;
 
 export const DEFAULT_SETTINGS: Settings = {
   files: [],
@@ -47,6 +54,8 @@ export const DEFAULT_SETTINGS: Settings = {
   grid: 'as-measured',
   coverage: 0.95,
   budget: null,
+  'monte-carlo': null,
+  seed: 1,
   tolerance: DEFAULT_TOLERANCE,
   risk: DEFAULT_RISK,
 };
@@ -99,6 +108,16 @@ const RULES: { readonly [Name in keyof Settings]: Rule<Settings[Name]> } = {
     expected: 'a probability above 0 and below 1',
     example: '0.95',
     read: (value) => number(value, (p) => p > 0 && p < 1),
+  },
+  'monte-carlo': {
+    expected: `a whole number of draws from ${DRAWS.least} to ${DRAWS.most}`,
+    example: '10000',
+    read: orNull((value) => number(value, (n) => Number.isInteger(n) && n >= DRAWS.least && n <= DRAWS.most)),
+  },
+  seed: {
+    expected: 'a whole number',
+    example: '1',
+    read: (value) => number(value, (n) => Number.isSafeInteger(n) && n < 2 ** 31),
   },
   budget: { expected: 'the name of a CSV file', example: 'budget.csv', read: orNull(name) },
   tolerance: {

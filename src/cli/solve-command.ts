@@ -1,14 +1,18 @@
 import { uncertaintyBudget } from '../estimate/budget.ts';
+import type { MonteCarlo } from '../estimate/monte-carlo.ts';
 import { examine } from '../findings/examine.ts';
-import { settle } from '../findings/settle.ts';
+import { type Settled, settle } from '../findings/settle.ts';
 import { buildModel } from '../model/build-model.ts';
-import { systematicEffects } from '../model/systematic-effects.ts';
+import type { Model } from '../model/model.ts';
+import { type SystematicEffect, systematicEffects } from '../model/systematic-effects.ts';
+import type { Readings } from '../readings/readings.ts';
 import { jsonText } from '../report/json-text.ts';
 import { outputFiles } from '../report/output-files.ts';
 import type { Result } from '../report/result.ts';
 import { summaryRecord } from '../report/summary-json.ts';
 import { terminalSummary } from '../report/terminal-summary.ts';
 import { gatherTakes } from '../takes/gather-takes.ts';
+import type { TakeSet } from '../takes/take-set.ts';
 import { EXIT } from './exit-codes.ts';
 import {
   changedFiles,
@@ -24,7 +28,8 @@ import { nothingApart } from './nothing-apart.ts';
 import type { Request } from './options.ts';
 import { openOutputFolder } from './output-folder.ts';
 import { installedPackage, pageScript } from './package-root.ts';
-import { progressLine } from './progress.ts';
+import { type Progress, progressLine } from './progress.ts';
+import type { Settings } from './settings.ts';
 import { textStyle, writeMessage, writeResult } from './terminal.ts';
 
 export interface SolveRun {
@@ -57,6 +62,7 @@ export async function solveCommand(request: Request, folderName: string, run: So
       onProgress,
     });
     const examination = examine(set, model, settled, settings);
+    const checked = await checkedByDraws(settings, readings, set, model, settled, effects, progress);
     const result: Result = {
       version: installedPackage().version,
       settings: { ...settings },
@@ -68,6 +74,7 @@ export async function solveCommand(request: Request, folderName: string, run: So
       model,
       solution: settled.solution,
       budget: uncertaintyBudget(set, model, settled.solution),
+      monteCarlo: checked,
       examination,
     };
     // Loaded only now: drawing takes packages that reading and solving have no use for.
@@ -81,6 +88,28 @@ export async function solveCommand(request: Request, folderName: string, run: So
   } finally {
     progress.clear();
   }
+}
+
+/** The Monte Carlo check, where it is asked for. */
+async function checkedByDraws(
+  settings: Settings,
+  readings: Readings,
+  set: TakeSet,
+  model: Model,
+  { solution, leftOut }: Settled,
+  effects: readonly SystematicEffect[],
+  progress: Progress,
+): Promise<MonteCarlo | undefined> {
+  const draws = settings['monte-carlo'];
+  if (draws === null) return undefined;
+  const { monteCarlo } = await import('../estimate/monte-carlo.ts');
+  const { levelDraws } = await import('../takes/drawn-levels.ts');
+  const width = set.frequencies.length;
+  const levels = set.levels.map((level, cell) => (leftOut.has(Math.floor(cell / width)) ? Number.NaN : level));
+  const { seed, coverage } = settings;
+  const drawn = levelDraws(readings, gatherOptions(settings), set);
+  const onProgress = progress.step('Monte Carlo check');
+  return monteCarlo({ ...set, levels }, model, solution, { draws, seed, coverage, levels: drawn, effects, onProgress });
 }
 
 function answer(result: Result, request: Request, folder: string): string {
@@ -103,7 +132,7 @@ function isSomethingFlagged({ takes, holds, changed, whole }: Result['examinatio
     whole.isModelFailing ||
     changed.length > 0 ||
     takes.some(({ verdict }) => verdict === 'flagged' || verdict === 'tied') ||
-    holds.some(({ verdict }) => verdict === 'broken' || verdict === 'strained')
+    holds.some(({ verdict }) => verdict === 'broken')
   );
 }
 

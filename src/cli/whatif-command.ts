@@ -5,8 +5,9 @@ import type { SuggestedTakes, WhatifResult } from '../report/whatif-result.ts';
 import { sheetFile, sheetPage } from '../report/whatif-sheet.ts';
 import { whatifFiles } from '../report/whatif-tables.ts';
 import { whatifText } from '../report/whatif-text.ts';
-import { costText, minutesText, scatterSentence } from '../report/whatif-wording.ts';
+import { costText, minutesText, openAsTold, scatterSentence } from '../report/whatif-wording.ts';
 import { listText } from '../report/wording.ts';
+import { asMounted, mountedAnew } from '../whatif/as-mounted.ts';
 import type { AssumedBand } from '../whatif/assumed-scatter.ts';
 import { figuresOf } from '../whatif/compare.ts';
 import { costOf } from '../whatif/costs.ts';
@@ -69,16 +70,21 @@ async function plan(request: WhatifRequest, inputs: WhatifInputs, progress: Prog
   // The band with the largest uncertainty counts where one has to: all gain most where it is worst.
   const band = bands[predictions.at(-1)?.worstBand ?? 0]!;
   const suggested = suggestedTakes(request, inputs, band, progress, notices);
-  const isOrdered = request.order || request.sheet !== undefined || request.control !== undefined;
+  const isOrdered =
+    suggested !== undefined || request.order || request.sheet !== undefined || request.control !== undefined;
   let design = suggested?.suggestion.design ?? inputs.designs.at(-1)!;
   let ordered: OrderedSeatings | undefined;
-  if (isOrdered || request.budget !== undefined) {
-    ordered = orderSeatings(design.seatings, request.seed);
+  if (isOrdered) {
+    ordered = request.fresh ? undefined : orderSeatings(design.seatings, request.seed);
     const made = design.seatings.filter(({ kind }) => kind === 'made');
-    design = { ...design, seatings: [...made, ...ordered.seatings] };
+    const due =
+      ordered === undefined
+        ? mountedAnew(design.seatings, inputs.lastSeatings)
+        : asMounted(ordered.seatings, inputs.lastSeatings);
+    design = { ...design, seatings: [...made, ...due] };
   }
   if (suggested !== undefined) predictions.push(await foresee(design));
-  else if (ordered !== undefined) predictions.splice(-1, 1, await foresee(design));
+  else if (isOrdered) predictions.splice(-1, 1, await foresee(design));
   // What was planned and is planned anew within a budget is no design to compare with.
   const shown = request.budget === undefined ? predictions : predictions.slice(-1);
   const { shift } = figuresOf(shown.at(-1)!);
@@ -100,7 +106,7 @@ async function plan(request: WhatifRequest, inputs: WhatifInputs, progress: Prog
       : {
           csv: request.sheet,
           page: request.sheet.replace(/\.csv$/i, '.html'),
-          takes: runSheet(design.seatings, inputs.lastSeatings),
+          takes: runSheet(design.seatings),
           frequencies: request.frequencies,
         };
   if (sheet?.takes.length === 0) throw nothingToCome(request.sheet!);
@@ -125,7 +131,7 @@ const FAULT = 3;
 
 function suggestedTakes(
   request: WhatifRequest,
-  { designs, model }: WhatifInputs,
+  { designs, model, lastSeatings }: WhatifInputs,
   band: AssumedBand,
   progress: Progress,
   notices: string[],
@@ -139,7 +145,7 @@ function suggestedTakes(
     const suggestion = suggestTakes(design, band, { ...common, add: add! });
     if (suggestion === undefined) throw noPair(design);
     if (reach.unreachable.length > 0) notices.push(unreachableText(design, reach));
-    return { suggestion, criterion, budget };
+    return { suggestion, criterion, budget, isCheapest: false };
   }
   if (reach.unreachable.length > 0) throw unreachableFault(design, reach);
   const { plan, nearest } = planWithinBudget(design, band, {
@@ -147,9 +153,11 @@ function suggestedTakes(
     minutes: budget,
     times: request.times,
     fewest: reach.fewest,
+    fresh: request.fresh,
+    from: lastSeatings,
   });
-  if (plan !== undefined) return { suggestion: plan.suggestion, criterion, budget };
-  const cost = nearest && costOf(nearest.ordered.seatings, request.times);
+  if (plan !== undefined) return { suggestion: plan.suggestion, criterion, budget, isCheapest: plan.isCheapest };
+  const cost = nearest && costOf(nearest.seatings, request.times);
   throw new InputError([
     {
       place: { file: '--budget-minutes' },
@@ -176,10 +184,10 @@ function unreachableText(design: Design, { unreachable, releases }: Reach): stri
   if (design.units.length < 3) return `No take tells two units apart, only their sum: a third unit would.`;
   const cure =
     releases.length > 0
-      ? `allow one of ${listText(
-          releases.map(([one, other]) => `${one} > ${other}`),
-          6,
-        )}`
+      ? `allow ${releases
+          .slice(0, 6)
+          .map(([one, other]) => `${one} > ${other}`)
+          .join(' or ')}`
       : 'allow more pairs, or name a further unit';
   return `Even with every allowed pair ${names} would have no level: ${cure}.`;
 }
@@ -217,6 +225,10 @@ function ending(predictions: readonly Prediction[]): number {
   const tells = ({ bands }: Prediction) => bands.some(({ units }) => units.some(({ status }) => status !== 'open'));
   if (predictions.some(tells)) return EXIT.done;
   const last = predictions.at(-1)!;
-  writeMessage(nothingApart(last.open, last.bench.set.frequencies));
+  const { open, frequencies } = openAsTold(last);
+  writeMessage(nothingApart(open, frequencies));
+  if (last.bench.design.units.length < 3) {
+    writeMessage('The nearest design that works: three units against each other, --units 3 --pattern all.');
+  }
   return EXIT.nothingApart;
 }

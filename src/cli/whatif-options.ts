@@ -1,12 +1,23 @@
 import type { Command } from 'commander';
 import type { LadderStep } from '../estimate/scatter-step.ts';
-import { type FrequencyRange, frequencyText, parseFrequency, parseRange } from '../quantity/frequency.ts';
+import { type FrequencyRange, frequencyText } from '../quantity/frequency.ts';
 import { LADDER_STEPS, type StepFigure } from '../whatif/assumed-scatter.ts';
 import { type BenchTimes, DEFAULT_TIMES } from '../whatif/costs.ts';
 import { CRITERIA, type Criterion } from '../whatif/criterion.ts';
 import type { UnitPair } from '../whatif/design.ts';
-import { FEWEST_UNITS, namedUnits, PATTERNS, type PatternName } from '../whatif/patterns.ts';
+import { PATTERNS, type PatternName } from '../whatif/patterns.ts';
 import { UsageError } from './usage-error.ts';
+import {
+  bandOf,
+  FIGURE_EXPECTED,
+  frequencyList,
+  listOr,
+  numberOf,
+  pairOf,
+  patternsOf,
+  stepFigure,
+  unitsOf,
+} from './whatif-values.ts';
 
 /** What the command line of `whatif` asks for. */
 export interface WhatifRequest {
@@ -30,6 +41,8 @@ export interface WhatifRequest {
   readonly forbidden: readonly UnitPair[];
   readonly again: boolean;
   readonly order: boolean;
+  /** Whether both units are mounted anew for every pair. */
+  readonly fresh: boolean;
   readonly control: UnitPair | undefined;
   readonly sheet: string | undefined;
   /** Hertz. */
@@ -68,6 +81,7 @@ export function addWhatifOptions(command: Command): Command {
     .option('--forbid <A>B,…>', 'pairs that cannot be taken; may be repeated', collect)
     .option('--again', 'suggested pairs may be mounted more than once')
     .option('--order', 'order the takes so that little is mounted between them')
+    .option('--fresh', 'both units are mounted anew for every pair, even if one stands there already')
     .option('--control <A>B>', 'take this pair at start, middle and end as well')
     .option('--sheet <CSV>', 'write a run sheet, and a page to print beside it')
     .option('--at <FREQUENCIES>', "frequencies of the sheet, such as '1 kHz,2 kHz'; else each take names a file")
@@ -87,8 +101,6 @@ function collect(value: string, before: readonly string[] | undefined): readonly
   return [...(before ?? []), value];
 }
 
-/** More units than this are no bench. Common practice, no source. */
-const MOST_UNITS = 200;
 const MOST_TIMES = 100;
 const MOST_ADDED = 400;
 const MOST_RUNS = 10_000;
@@ -183,6 +195,7 @@ export function readWhatifRequest(
     forbidden,
     again: values.again === true,
     order: values.order === true,
+    fresh: values.fresh === true,
     control,
     sheet: name('sheet', 'sheet', 'sheet.csv'),
     frequencies: frequencies ?? [],
@@ -204,7 +217,7 @@ export function readWhatifRequest(
 
 /** What each option allows and another one does not. */
 function togetherTroubles(request: WhatifRequest): string[] {
-  const { designs, units, patterns, from, band, add, budget, sheet, frequencies, rehearse, control, order, fault } =
+  const { designs, patterns, from, band, add, budget, sheet, frequencies, rehearse, control, order, fresh, fault } =
     request;
   const said: string[] = [];
   const suggests = add !== undefined || budget !== undefined;
@@ -212,14 +225,15 @@ function togetherTroubles(request: WhatifRequest): string[] {
   for (const file of designs) {
     if (file.trim() === '') said.push(`DESIGN: found ${JSON.stringify(file)}; expected a file name.`);
   }
-  if (named === 0 && from === undefined && !(units !== undefined && suggests)) {
+  const hasUnits = request.typed.units !== undefined;
+  if (named === 0 && from === undefined && !(hasUnits && suggests)) {
     said.push(
-      units === undefined
+      !hasUnits
         ? 'DESIGN: found none; expected a CSV of pairs, --units with --pattern, or --from. Example: oddloop whatif --units 6 --pattern all'
         : '--units: found no pattern with it; expected --pattern, --add or --budget-minutes. Example: oddloop whatif --units 6 --pattern all',
     );
   }
-  if (patterns.length > 0 && units === undefined) {
+  if (patterns.length > 0 && !hasUnits) {
     said.push('--pattern: found no number of units; expected --units. Example: --units 6 --pattern all');
   }
   if (add !== undefined && budget !== undefined) {
@@ -248,87 +262,15 @@ function togetherTroubles(request: WhatifRequest): string[] {
   if (sheet !== undefined && !sheet.toLowerCase().endsWith('.csv')) {
     said.push(`--sheet: found ${JSON.stringify(sheet)}; expected a name that ends in .csv. Example: --sheet sheet.csv`);
   }
+  if (order && fresh) {
+    said.push(
+      '--order and --fresh: found both; expected one of them: with every unit mounted anew no order is better.',
+    );
+  }
   if (fault !== undefined && rehearse === undefined) {
     said.push('--fault: found no rehearsal; expected --rehearse. Example: --rehearse 100 --fault 3');
   }
   return said;
-}
-
-const FIGURE_EXPECTED = 'a standard deviation in dB, 0 or more, or figures by bands that do not overlap';
-
-/** `0.3`, or `2 kHz..20 kHz=0.1,20 kHz..80 kHz=0.2`; undefined for anything else. */
-export function stepFigure(text: string): StepFigure | undefined {
-  const single = numberOf(text);
-  if (single !== undefined) return single;
-  const bands = text.split(',').map((part) => {
-    const [range, figure, ...rest] = part.split('=');
-    const band = rest.length > 0 || range === undefined ? undefined : parseRange(range);
-    const value = figure === undefined ? undefined : numberOf(figure);
-    return band === undefined || value === undefined ? undefined : { from: band.from, to: band.to, value };
-  });
-  if (!bands.every((band) => band !== undefined)) return undefined;
-  const sorted = [...bands].sort((a, b) => a.from - b.from);
-  return sorted.some((band, b) => b > 0 && band.from < sorted[b - 1]!.to) ? undefined : sorted;
-}
-
-/** `1 kHz,2 kHz`, ascending; undefined where one is no frequency or comes twice. */
-function frequencyList(text: string): number[] | undefined {
-  const found = text.split(',').map(parseFrequency);
-  if (!found.every((frequency) => frequency !== undefined)) return undefined;
-  return new Set(found).size === found.length ? found.sort((a, b) => a - b) : undefined;
-}
-
-/** A number from 0 on, with a decimal point. */
-function numberOf(typed: unknown): number | undefined {
-  const text = typeof typed === 'string' ? typed.trim() : '';
-  return /^(\d+\.?\d*|\.\d+)(e[+-]?\d+)?$/i.test(text) && Number.isFinite(Number(text)) ? Number(text) : undefined;
-}
-
-/** The range that `--band` names; says where it cannot be read. */
-export function bandOf(typed: unknown, say: Say): FrequencyRange | undefined {
-  if (typed === undefined) return undefined;
-  const band = typeof typed === 'string' ? parseRange(typed) : undefined;
-  if (band === undefined) say('band', typed, 'two frequencies with their units, the lower first', "'2 kHz..80 kHz'");
-  return band;
-}
-
-export type Say = (name: string, found: unknown, expected: string, example: string) => void;
-
-function unitsOf(typed: unknown, say: Say): readonly string[] | undefined {
-  if (typeof typed !== 'string') return undefined;
-  const enough = `at least ${FEWEST_UNITS} units, as a number or by name; three are the fewest that takes alone tell apart`;
-  const count = numberOf(typed);
-  if (count !== undefined) {
-    if (Number.isInteger(count) && count >= FEWEST_UNITS && count <= MOST_UNITS) return namedUnits(count);
-    say('units', typed, `${enough}, and at most ${MOST_UNITS}`, '6');
-    return undefined;
-  }
-  const names = typed.split(',').map((text) => text.trim());
-  if (names.length >= FEWEST_UNITS && names.every((text) => text !== '') && new Set(names).size === names.length) {
-    return names;
-  }
-  say('units', typed, `${enough}, each name once`, 'S1,S2,S3');
-  return undefined;
-}
-
-function patternsOf(typed: unknown, say: Say): PatternName[] {
-  if (typeof typed !== 'string') return [];
-  const found: PatternName[] = [];
-  for (const text of typed.split(',')) {
-    const pattern = PATTERNS.find((candidate) => candidate === text.trim());
-    if (pattern === undefined) say('pattern', text, listOr(PATTERNS), 'all');
-    else found.push(pattern);
-  }
-  return found;
-}
-
-function pairOf(text: string): UnitPair | undefined {
-  const [one = '', other = '', ...rest] = text.split('>').map((part) => part.trim());
-  return rest.length > 0 || one === '' || other === '' || one === other ? undefined : [one, other];
-}
-
-function listOr(words: readonly string[]): string {
-  return `${words.slice(0, -1).join(', ')} or ${words.at(-1)}`;
 }
 
 /** A stretch that a step has no figure for, in words. */

@@ -1,5 +1,6 @@
 import type { Model } from '../model/model.ts';
 import type { TakeSet } from '../takes/take-set.ts';
+import { type SharedSeatings, sharedSeatings } from './shared-seatings.ts';
 
 /** Takes that the model explains by the same links: what can differ between them is seating and noise. */
 export interface ChainGroup {
@@ -13,8 +14,8 @@ export interface ChainGroup {
 }
 
 /**
- * Groups takes by chain and, within a chain, by seating. Seatings of one chain count as independent of each other, and of
- * those of other chains. Gains shared by all frequencies do not tell chains apart.
+ * Groups takes by chain and, within a chain, by seating. Seatings count as independent of each other here; those that
+ * share a unit's seating are told by `ChainLayout.shared`. Gains shared by all frequencies do not tell chains apart.
  */
 function chainGroups(set: TakeSet, model: Model): ChainGroup[] {
   const groups = new Map<string, { chain: number; seatings: Map<string, number[]> }>();
@@ -48,6 +49,8 @@ export interface ChainLayout {
   readonly chainOfSeat: Int32Array;
   /** Seating of each take. */
   readonly seatOf: Int32Array;
+  /** Seatings of single units that serve more than one seating of a pair. */
+  readonly shared: SharedSeatings;
 }
 
 export function chainLayout(set: TakeSet, model: Model): ChainLayout {
@@ -65,5 +68,6 @@ export function chainLayout(set: TakeSet, model: Model): ChainLayout {
   takes.forEach((members, seat) => {
     for (const t of members) seatOf[t] = seat;
   });
-  return { groups, seatStart, takes, chainOfSeat, seatOf };
+  const layout = { groups, seatStart, takes, chainOfSeat, seatOf };
+  return { ...layout, shared: sharedSeatings(set, model, layout) };
 }

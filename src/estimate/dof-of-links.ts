@@ -9,7 +9,7 @@ import type { LevelScatter } from './scatter-of-level.ts';
  * Source: JCGM 100:2008, G.4.1 (Welch–Satterthwaite), every share being a source of its own.
  */
 export function dofOfLinks(layout: ChainLayout, scatter: LevelScatter, n: number): Float64Array {
-  const { fitted, seating, partner, repeatVariance, repeatDof } = scatter;
+  const { fitted, seating, partner, repeatDof } = scatter;
   const inverse = inverseNormal(layout, fitted.chainWeight, n);
   const parts = layout.groups.map((_, chain) => chainParts(layout, scatter, chain));
   const seatParts = new Float64Array(n);
@@ -24,7 +24,7 @@ export function dofOfLinks(layout: ChainLayout, scatter: LevelScatter, n: number
       let gain = 0;
       for (let k = 0; k < links.length; k++) gain += inverse[link * n + links[k]!]! * factors[k]!;
       const square = (gain * weight) ** 2;
-      repeat += square * parts[chain]!.repeat * repeatVariance;
+      repeat += square * parts[chain]!.repeat;
       for (const end of ends) {
         seatParts[end] = seatParts[end]! + square * parts[chain]!.seat * (seating?.shares[end] ?? 0);
         partnerParts[end] = partnerParts[end]! + square * (partner?.shares[end] ?? 0);
@@ -37,14 +37,14 @@ export function dofOfLinks(layout: ChainLayout, scatter: LevelScatter, n: number
   });
 }
 
-/** How often the repeat and the seating variance stand in the variance of a chain's mean. */
+/** What repeats add to the variance of a chain's mean in dB², and how often the seating variance stands in it. */
 function chainParts(layout: ChainLayout, { fitted }: LevelScatter, chain: number): { repeat: number; seat: number } {
   let repeat = 0;
   let seat = 0;
   for (let s = layout.seatStart[chain]!; s < layout.seatStart[chain + 1]!; s++) {
     if (fitted.seatCount[s] === 0) continue;
     const part = fitted.seatPrecision[s]! / fitted.chainPrecision[chain]!;
-    repeat += (part * part) / fitted.seatCount[s]!;
+    repeat += (part * part) / fitted.seatInformation[s]!;
     seat += part * part;
   }
   return { repeat, seat };

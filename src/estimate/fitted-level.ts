@@ -9,6 +9,8 @@ export interface FittedLevel {
   readonly seatMean: Float64Array;
   /** Active takes of each seating. */
   readonly seatCount: Int32Array;
+  /** Σ 1/variance of the seating's active takes by themselves. */
+  readonly seatInformation: Float64Array;
   /** 1 / variance of the seating's mean under repeat and seating scatter; 0 without active takes. */
   readonly seatPrecision: Float64Array;
   readonly seatVariance: Float64Array;
@@ -24,29 +26,37 @@ export interface FittedLevel {
   readonly leverageFactor: Float64Array;
 }
 
-export function meansOfSeats(layout: ChainLayout, { values, columns, active }: Deviations): FittedLevel {
+/** @param variances of one take each, or what is proportional to them: takes of a seating weigh by their inverse. */
+export function meansOfSeats(
+  layout: ChainLayout,
+  { values, columns, active }: Deviations,
+  variances: Float64Array,
+): FittedLevel {
   const seats = layout.takes.length;
   const chains = layout.groups.length;
   const seatMean = new Float64Array(seats * columns);
   const seatCount = new Int32Array(seats);
+  const weights = new Float64Array(seats);
   for (let t = 0; t < active.length; t++) {
     if (!active[t]) continue;
     const seat = layout.seatOf[t]!;
+    const weight = 1 / variances[t]!;
     seatCount[seat] = seatCount[seat]! + 1;
+    weights[seat] = weights[seat]! + weight;
     for (let c = 0; c < columns; c++) {
-      seatMean[seat * columns + c] = seatMean[seat * columns + c]! + values[t * columns + c]!;
+      seatMean[seat * columns + c] = seatMean[seat * columns + c]! + weight * values[t * columns + c]!;
     }
   }
   for (let seat = 0; seat < seats; seat++) {
-    const count = seatCount[seat]!;
-    for (let c = 0; c < columns && count > 1; c++) {
-      seatMean[seat * columns + c] = seatMean[seat * columns + c]! / count;
+    for (let c = 0; c < columns && seatCount[seat]! > 0; c++) {
+      seatMean[seat * columns + c] = seatMean[seat * columns + c]! / weights[seat]!;
     }
   }
   return {
     columns,
     seatMean,
     seatCount,
+    seatInformation: new Float64Array(seats),
     seatPrecision: new Float64Array(seats),
     seatVariance: new Float64Array(chains),
     chainPrecision: new Float64Array(chains),
@@ -62,18 +72,24 @@ export function meansOfSeats(layout: ChainLayout, { values, columns, active }: D
 export function weighSeats(
   layout: ChainLayout,
   fitted: FittedLevel,
-  repeat: number,
+  active: readonly boolean[],
+  variances: Float64Array,
   seating: VarianceShares | undefined,
 ): void {
-  const { columns, seatMean, seatCount, seatPrecision, seatVariance, chainPrecision, chainMean } = fitted;
+  const { columns, seatMean, seatInformation, seatPrecision, seatVariance, chainPrecision, chainMean } = fitted;
+  for (let t = 0; t < active.length; t++) {
+    if (!active[t]) continue;
+    const seat = layout.seatOf[t]!;
+    seatInformation[seat] = seatInformation[seat]! + 1 / variances[t]!;
+  }
   layout.groups.forEach(({ ends }, chain) => {
     const variance = seating === undefined ? 0 : seating.shares[ends[0]]! + seating.shares[ends[1]]!;
     seatVariance[chain] = variance;
     const [from, to] = [layout.seatStart[chain]!, layout.seatStart[chain + 1]!];
     let total = 0;
     for (let seat = from; seat < to; seat++) {
-      const count = seatCount[seat]!;
-      seatPrecision[seat] = count === 0 ? 0 : 1 / (variance + repeat / count);
+      const own = seatInformation[seat]!;
+      seatPrecision[seat] = own > 0 ? 1 / (variance + 1 / own) : 0;
       total += seatPrecision[seat]!;
     }
     chainPrecision[chain] = total;
@@ -99,9 +115,13 @@ export function setPartners(layout: ChainLayout, fitted: FittedLevel, partner: V
 /** Part of the mean diagonal added to the normal matrix, so that what the takes leave open does no harm. */
 const RIDGE = 1e-9;
 
-/** Fits n links to the chains' means with the chains' weights; returns the degrees of freedom left. */
-export function fitChains(layout: ChainLayout, fitted: FittedLevel, n: number): number {
-  const { columns, chainMean, chainResidual, chainWeight, leverageFactor } = fitted;
+/**
+ * Fits n links to the chains' means with the chains' weights; returns the degrees of freedom left.
+ * @param factors multiply the weights; a chain with 0 has no part in the fit and is held against it all the same.
+ */
+export function fitChains(layout: ChainLayout, fitted: FittedLevel, n: number, factors?: Float64Array): number {
+  const { columns, chainMean, chainResidual, leverageFactor } = fitted;
+  const chainWeight = factors === undefined ? fitted.chainWeight : fitted.chainWeight.map((w, c) => w * factors[c]!);
   const inverse = inverseNormal(layout, chainWeight, n);
   const side = new Float64Array(n * columns);
   layout.groups.forEach(({ links, factors }, chain) => {
@@ -122,7 +142,7 @@ export function fitChains(layout: ChainLayout, fitted: FittedLevel, n: number): 
   }
   let left = 0;
   layout.groups.forEach(({ links, factors }, chain) => {
-    if (!(chainWeight[chain]! > 0)) return;
+    if (!(fitted.chainWeight[chain]! > 0)) return;
     for (let c = 0; c < columns; c++) {
       let rest = chainMean[chain * columns + c]!;
       for (let k = 0; k < links.length; k++) rest -= factors[k]! * estimates[links[k]! * columns + c]!;
@@ -133,7 +153,7 @@ export function fitChains(layout: ChainLayout, fitted: FittedLevel, n: number): 
       for (let l = 0; l < links.length; l++) factor += factors[k]! * factors[l]! * inverse[links[k]! * n + links[l]!]!;
     }
     leverageFactor[chain] = factor;
-    left += 1 - chainWeight[chain]! * factor;
+    if (chainWeight[chain]! > 0) left += 1 - chainWeight[chain]! * factor;
   });
   return left;
 }

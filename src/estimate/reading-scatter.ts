@@ -4,7 +4,7 @@ import type { ChainLayout } from './chain-groups.ts';
 import { dofOfLinks } from './dof-of-links.ts';
 import { noiseOverRepeats } from './reading-uncertainty.ts';
 import type { LevelScatter } from './scatter-of-level.ts';
-import { type SharedSeatings, sharedSeatings } from './shared-seatings.ts';
+import type { SharedSeatings } from './shared-seatings.ts';
 import { isGiven, type ReadingUncertainty } from './solution.ts';
 
 /** Scatter of one band, for the frequencies in it. */
@@ -77,7 +77,7 @@ export function readingScatter(
   const links = model.linksPerFrequency;
   const perReading = () => new Float64Array(set.levels.length).fill(Number.NaN);
   const [total, independent, single] = [perReading(), perReading(), perReading()];
-  const shared = sharedSeatings(set, model, layout);
+  const { shared } = layout;
   const levelOf = new Array<LevelScatter | undefined>(width).fill(undefined);
   const sharedDeviation = new Float64Array(width * shared.seatings.length).fill(LEAST_DEVIATION);
   const perLink = () => new Float64Array(width * links).fill(Number.NaN);

@@ -26,7 +26,11 @@ export interface SharedSeatings {
  * is mounted anew, or that is measured against several partners. A unit without a label counts as mounted anew for each
  * pair in each session.
  */
-export function sharedSeatings(set: TakeSet, model: Model, layout: ChainLayout): SharedSeatings {
+export function sharedSeatings(
+  set: TakeSet,
+  model: Model,
+  layout: Pick<ChainLayout, 'chainOfSeat' | 'seatOf' | 'takes'>,
+): SharedSeatings {
   const served = new Map<string, Set<string>>();
   const ends = set.takes.map((_, t) => endsOf(set, model, t));
   ends.forEach((both, t) => {

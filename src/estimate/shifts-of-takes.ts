@@ -37,23 +37,16 @@ export function shiftsOfTakes(layout: ChainLayout, scatter: LevelScatter, only?:
 function shiftOf(layout: ChainLayout, scatter: LevelScatter, take: number, into: TakeShifts): void {
   const { columns, values, active } = scatter.deviations;
   if (!active[take]) return;
-  const { fitted, repeatVariance: repeat } = scatter;
-  const seat = layout.seatOf[take]!;
-  const chain = layout.chainOfSeat[seat]!;
-  const count = fitted.seatCount[seat]!;
-  // Weight of one take of the seating; the seating's part in the chain; what the partner variance dampens.
-  const h = 1 / (repeat + count * fitted.seatVariance[chain]!);
-  const part = fitted.seatPrecision[seat]! / fitted.chainPrecision[chain]!;
-  const spread = 1 + fitted.chainPartner[chain]! * fitted.chainPrecision[chain]!;
-  const left = Math.max(0, 1 - fitted.chainWeight[chain]! * fitted.leverageFactor[chain]!);
-  if (count === 1 && part > ONLY_SEAT && !(left > UNCHECKED)) return;
-  const information = informationOn(count, repeat, h, part, spread, left);
+  const { fitted } = scatter;
+  const place = placeOf(layout, scatter, take);
+  if (place === undefined) return;
+  const { seat, chain, variance, h, spread, information } = place;
   for (let c = 0; c < columns; c++) {
     const seatMean = fitted.seatMean[seat * columns + c]!;
-    const within = count === 1 ? 0 : (values[take * columns + c]! - seatMean) / repeat;
+    const within = (values[take * columns + c]! - seatMean) / variance;
     const ofSeat =
       seatMean - fitted.chainMean[chain * columns + c]! + fitted.chainResidual[chain * columns + c]! / spread;
-    into.shift[take * columns + c] = (within + h * ofSeat) / information;
+    into.shift[take * columns + c] = ((fitted.seatCount[seat] === 1 ? 0 : within) + h * ofSeat) / information;
   }
   into.uncertainty[take] = 1 / Math.sqrt(information);
 }
@@ -61,23 +54,44 @@ function shiftOf(layout: ChainLayout, scatter: LevelScatter, take: number, into:
 /** A seating with this part of its chain is the only one; the rest is rounding. */
 const ONLY_SEAT = 1 - 1e-12;
 
-/** Pₜₜ, written as a sum of what repeats, other seatings and other chains tell, so that nothing cancels. */
-function informationOn(count: number, repeat: number, h: number, part: number, spread: number, left: number): number {
-  const ofChain = (part > ONLY_SEAT ? 0 : 1 - part) * spread + part * left;
-  return (count - 1) / (count * repeat) + (h * ofChain) / (count * spread);
+/** Where a take stands in its chain, and the information Pₜₜ on its shift; undefined where nothing checks it. */
+interface TakePlace {
+  readonly seat: number;
+  readonly chain: number;
+  /** Of the take by itself. */
+  readonly variance: number;
+  /** Its entry of V⁻¹1 within its seating. */
+  readonly h: number;
+  /** What the partner variance dampens; the part of the chain's weight that its fit leaves. */
+  readonly spread: number;
+  readonly left: number;
+  readonly information: number;
+}
+
+function placeOf(layout: ChainLayout, { fitted, takeVariance }: LevelScatter, take: number): TakePlace | undefined {
+  const seat = layout.seatOf[take]!;
+  const chain = layout.chainOfSeat[seat]!;
+  const variance = takeVariance[take]!;
+  const own = fitted.seatInformation[seat]!;
+  const share = fitted.seatCount[seat] === 1 ? 1 : 1 / (variance * own);
+  const precision = fitted.seatPrecision[seat]!;
+  const h = share * precision;
+  const part = precision / fitted.chainPrecision[chain]!;
+  const spread = 1 + fitted.chainPartner[chain]! * fitted.chainPrecision[chain]!;
+  const left = Math.max(0, 1 - fitted.chainWeight[chain]! * fitted.leverageFactor[chain]!);
+  const isOnly = part > ONLY_SEAT;
+  if (share === 1 && isOnly && !(left > UNCHECKED)) return undefined;
+  // Written as a sum of what repeats, other seatings and other chains tell, so that nothing cancels.
+  const ofChain = (isOnly ? 0 : 1 - part) * spread + part * left;
+  const information = (1 - share) / variance + (share * share * precision * ofChain) / spread;
+  return { seat, chain, variance, h, spread, left, information };
 }
 
 function dofOfShift(layout: ChainLayout, scatter: LevelScatter, take: number): number {
-  const { seatPrecision, chainPrecision, seatVariance, chainPartner, chainWeight, leverageFactor, seatCount } =
-    scatter.fitted;
-  const seat = layout.seatOf[take]!;
-  const chain = layout.chainOfSeat[seat]!;
-  const count = seatCount[seat]!;
-  const h = 1 / (scatter.repeatVariance + count * seatVariance[chain]!);
-  const spread = 1 + chainPartner[chain]! * chainPrecision[chain]!;
-  const left = Math.max(0, 1 - chainWeight[chain]! * leverageFactor[chain]!);
-  const own = seatPrecision[seat]! / chainPrecision[chain]!;
-  const information = informationOn(count, scatter.repeatVariance, h, own, spread, left);
+  const place = placeOf(layout, scatter, take);
+  if (place === undefined) return Number.NaN;
+  const { seat, chain, h, spread, left, information } = place;
+  const { seatPrecision, chainPrecision, seatVariance, chainPartner } = scatter.fitted;
   let seatPart = 0;
   for (let other = layout.seatStart[chain]!; other < layout.seatStart[chain + 1]!; other++) {
     // Sum of P's column of the take over the takes of a seating.

@@ -102,7 +102,7 @@ function scatterStatement(set: TakeSet, total: Float64Array, independent: Float6
   };
 }
 
-function passWith(
+export function passWith(
   set: TakeSet,
   model: Model,
   patterns: Patterns,

@@ -2,6 +2,7 @@ import type { ScatterStep } from '../estimate/scatter-step.ts';
 import type { LinkStatus } from '../model/separability.ts';
 import type { ChangedUnit } from './changed-units.ts';
 import type { ExplainedTake } from './explanations.ts';
+import type { FailingBand } from './failing-bands.ts';
 import type { HoldFinding } from './holds.ts';
 import type { LevelMisfit } from './level-misfit.ts';
 import type { LoopFindings } from './loops.ts';
@@ -74,9 +75,9 @@ export interface UnitFinding {
   /** Median standard and expanded uncertainty in dB; NaN where there is none. */
   readonly medianUncertainty: number;
   readonly medianExpanded: number;
-  /** Median expanded uncertainty in dB for the unit seated again, and seated again on another partner; NaN where not known. */
-  readonly medianReseatExpanded: number;
-  readonly medianPartnerExpanded: number;
+  /** Median standard uncertainty in dB for the unit seated again, and seated again on another partner; NaN where not known. */
+  readonly medianReseatUncertainty: number;
+  readonly medianPartnerUncertainty: number;
   /** Number of frequencies with each status. */
   readonly counts: Readonly<Record<LinkStatus, number>>;
   /** True where no reading of this response has redundancy: nothing checks it. */
@@ -147,6 +148,8 @@ export interface Examination {
   readonly units: readonly UnitFinding[];
   readonly open: readonly OpenFinding[];
   readonly holds: readonly HoldFinding[];
+  /** Bands in which the additive model itself fails. */
+  readonly failing: readonly FailingBand[];
   /** Units whose level is another one from some take on, the surest first. */
   readonly changed: readonly ChangedUnit[];
   /** The ladder of scatter, a third-octave band each. */

@@ -18,6 +18,7 @@ import type {
   UnitFinding,
   WholeFinding,
 } from './examination.ts';
+import { failingBands } from './failing-bands.ts';
 import { holdFindings } from './holds.ts';
 import { levelMisfit } from './level-misfit.ts';
 import { loopFindings } from './loops.ts';
@@ -48,6 +49,7 @@ export function examine(set: TakeSet, model: Model, settled: Settled, options: E
     pairs: pairFindings(set, takes),
     units: model.responses.map((_, response) => unitFinding(set, model, solution, response, factorOf)),
     open: [...openFindings(set, model, solution), ...gainFindings(model, solution)],
+    failing: failingBands(screening.levels, options),
     changed: changedUnits(set, model, screening.levels, options.risk),
     holds: holdFindings(model, screening.levels, options),
     mounts: mountDifferences(set, model, solution, factorOf),
@@ -188,19 +190,15 @@ function unitFinding(
     uncertainties.push(u);
     expanded.push(u * factorOf(solution.dof[cell]!));
   }
-  // Typical u times the factor for the typical degrees of freedom: a factor at each frequency would cost more than it tells.
-  const typicalOver = (uncertainty: Float64Array, dof: Float64Array) => {
-    const cells = [...set.frequencies.keys()].map((f) => f * n + link).filter((cell) => uncertainty[cell]! >= 0);
-    if (cells.length === 0) return Number.NaN;
-    return median(cells.map((cell) => uncertainty[cell]!)) * factorOf(median(cells.map((cell) => dof[cell]!)));
-  };
+  const typical = (uncertainty: Float64Array) =>
+    median([...set.frequencies.keys()].map((f) => uncertainty[f * n + link]!).filter((u) => !Number.isNaN(u)));
   return {
     response,
     medianLevel: median(levels),
     medianUncertainty: median(uncertainties),
     medianExpanded: median(expanded),
-    medianReseatExpanded: typicalOver(solution.reseatUncertainty, solution.reseatDof),
-    medianPartnerExpanded: typicalOver(solution.partnerUncertainty, solution.partnerDof),
+    medianReseatUncertainty: typical(solution.reseatUncertainty),
+    medianPartnerUncertainty: typical(solution.partnerUncertainty),
     counts,
     unchecked: isUnchecked(set, model, solution, link),
   };

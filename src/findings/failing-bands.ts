@@ -1,40 +1,50 @@
-import type { HoldFinding } from './holds.ts';
-import { FAILING_PART, SURELY_FAILING_PART } from './thresholds.ts';
+import { partnerContrasts } from '../estimate/scatter-of-level.ts';
+import { chiSquareUpperQuantile } from '../numeric/chi-square.ts';
+import type { ScreeningLevels } from './screening-levels.ts';
 
-/** A band in which it is not single units that depend on their partner, but most of them. */
+/** A band in which it is not single units that depend on their partner, but the bench as a whole. */
 export interface FailingBand {
   /** Hertz. */
   readonly from: number;
   readonly to: number;
-  /** All units, those of them that show more partner scatter than the tolerance, and those surely above it. */
-  readonly units: number;
-  readonly aboveTolerance: number;
-  readonly broken: number;
+  /** Standard deviation in dB that a typical unit's response shows over its partners, and its lower confidence bound. */
+  readonly typical: number;
+  readonly low: number;
 }
 
+/** Median of χ²(1), and the part of its degrees of freedom that a variance from a median keeps (both recalled from memory). */
+const MEDIAN_SQUARE = 0.454936;
+const MEDIAN_EFFICIENCY = 0.37;
+/** Fewer degrees of freedom than this say nothing of a bench. Common practice, no source. */
+const FEWEST_DOF = 4;
+
 /**
- * Bands in which the additive model itself fails: most units show more partner scatter than the tolerance, and so many
- * are surely above it that chance does not explain them. A single unit that depends on its partners makes no band fail.
- * Ascending.
- * @param tolerance decibels.
+ * Bands in which the additive model itself fails: the median of what chains leave over it, so that a single unit does not
+ * make a band fail, is surely above what the tolerance would give. Ascending.
+ * @param tolerance decibels, for one unit. @param coverage confidence of the bound, all bands taken together.
  */
-export function failingBands(holds: readonly HoldFinding[], tolerance: number): FailingBand[] {
-  const bands = new Map<number, HoldFinding[]>();
-  for (const hold of holds) bands.set(hold.from, [...(bands.get(hold.from) ?? []), hold]);
-  return [...bands.values()]
-    .map(
-      (own): FailingBand => ({
-        from: own[0]!.from,
-        to: own[0]!.to,
-        units: own.length,
-        // A unit without a figure (NaN) says nothing against the model.
-        aboveTolerance: own.filter(({ partner }) => partner > tolerance).length,
-        broken: own.filter(({ verdict }) => verdict === 'broken').length,
-      }),
-    )
-    .filter(
-      ({ units, aboveTolerance, broken }) =>
-        aboveTolerance > FAILING_PART * units && broken > SURELY_FAILING_PART * units && broken > 1,
-    )
+export function failingBands(
+  { bands, layout }: ScreeningLevels,
+  { tolerance, coverage }: { readonly tolerance: number; readonly coverage: number },
+): FailingBand[] {
+  const tail = (1 - coverage) / Math.max(1, bands.length);
+  return bands
+    .flatMap(({ from, to, scatter }): FailingBand[] => {
+      const contrasts = partnerContrasts(layout, scatter.fitted, scatter.seating);
+      const dof = MEDIAN_EFFICIENCY * contrasts.reduce((sum, contrast) => sum + contrast.dof, 0);
+      if (dof < FEWEST_DOF) return [];
+      const variance = median(contrasts.map(({ square }) => square)) / MEDIAN_SQUARE;
+      const known = median(contrasts.map((contrast) => contrast.known));
+      const least = (variance * dof) / chiSquareUpperQuantile(tail, dof);
+      // A chain holds the shares of both its ends.
+      const share = (total: number) => Math.sqrt(Math.max(0, total - known) / 2);
+      return [{ from, to, typical: share(variance), low: share(least) }];
+    })
+    .filter(({ low }) => low > tolerance)
     .sort((a, b) => a.from - b.from);
+}
+
+function median(values: readonly number[]): number {
+  const sorted = Float64Array.from(values).sort();
+  return sorted[sorted.length >> 1] ?? 0;
 }

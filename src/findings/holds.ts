@@ -46,7 +46,9 @@ export function holdFindings(model: Model, levels: ScreeningLevels, options: Hol
   const units = unitsOf(model);
   const raw = levels.bands.flatMap(({ from, to, scatter }) => {
     const band = bandContrasts(levels.layout, scatter, levels.links);
-    return units.map((unit) => ({ unit, from, to, ...shareOf(unit.links, band, options) }));
+    // Without a test of its own a unit is judged by its bound alone, which then has to bear all units and bands.
+    const judged = band.isTestable ? 1 : units.length * levels.bands.length;
+    return units.map((unit) => ({ unit, from, to, ...shareOf(unit.links, band, options, judged) }));
   });
   const adjusted = holmAdjusted(raw.map(({ pValue }) => pValue));
   const findings = raw.map(({ unit: { unit, mount }, from, to, partner, low, high, isTestable }, k): HoldFinding => {
@@ -111,7 +113,7 @@ function bandContrasts(
 ): BandContrasts {
   const seatDof = seating === undefined ? Number.POSITIVE_INFINITY : seating.dof.reduce((sum, dof) => sum + dof, 0);
   return {
-    contrasts: partnerContrasts(layout, fitted),
+    contrasts: partnerContrasts(layout, fitted, seating),
     start: partner?.shares ?? new Float64Array(n),
     knownDof: seating === undefined ? repeatDof : seatDof,
     isTestable: repeatDof > 0 || seating !== undefined,
@@ -122,6 +124,7 @@ function shareOf(
   links: ReadonlySet<number>,
   { contrasts, start, knownDof, isTestable }: BandContrasts,
   { coverage }: HoldOptions,
+  judged: number,
 ) {
   const nothing = { partner: Number.NaN, low: Number.NaN, high: Number.NaN, pValue: Number.NaN, isTestable: false };
   const own = contrasts.filter(({ a, b }) => links.has(a) || links.has(b));
@@ -139,7 +142,7 @@ function shareOf(
     own.reduce((sum, { square, dof: nu }, k) => sum + (nu * square * scale) / (times[k]! * q + rest[k]!), 0);
   const observed = ratio(0);
   const pValue = isTestable ? fUpper(observed / dof, dof, Math.max(1, knownDof)) : Number.NaN;
-  const tail = (1 - coverage) / 2;
+  const tail = (1 - coverage) / 2 / judged;
   const solveFor = (target: number, scale = 1) =>
     observed * scale <= target ? 0 : root((q) => ratio(q, scale) - target);
   // Less scatter than expected is luck: the upper bound is never below that of just what is expected.

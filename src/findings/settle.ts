@@ -1,7 +1,7 @@
 import { readingScatter } from '../estimate/reading-scatter.ts';
 import { type LevelScatter, refitLevel } from '../estimate/scatter-of-level.ts';
 import { shiftsOfTakes } from '../estimate/shifts-of-takes.ts';
-import type { Solution } from '../estimate/solution.ts';
+import { isGiven, type Solution } from '../estimate/solution.ts';
 import { type SolveOptions, solve } from '../estimate/solve.ts';
 import type { Model } from '../model/model.ts';
 import { neighbourCorrelation } from '../numeric/effective-share.ts';
@@ -37,10 +37,8 @@ export interface SettleOptions extends SolveOptions {
  */
 export async function settle(set: TakeSet, model: Model, options: SettleOptions): Promise<Settled> {
   const first = await solve(set, model, options);
-  const screening = screenTakes(set, model, first, options);
-  const leftOut = new Set(
-    screening.isModelFailing ? [] : screening.setAside.filter((t) => screening.takes[t]!.verdict === 'flagged'),
-  );
+  const screening = await screenTwice(set, model, first, options);
+  const leftOut = flaggedOf(screening);
   const solution = await solveAgain(set, model, options, first, screening.levels, leftOut);
   const suspects = screening.takes
     .map(({ verdict }, t) => ({ verdict, t }))
@@ -55,6 +53,21 @@ export async function settle(set: TakeSet, model: Model, options: SettleOptions)
     return explainTake(set, model, solution, t, { ...deviationOf(levels, set, t, out), correlation });
   });
   return { first, solution, screening, leftOut, explained };
+}
+
+/**
+ * Screens the takes; where any is flagged and the user gave the uncertainty of readings, once more by the residuals of a
+ * solution without it: a bad take makes all residuals alike along frequency, and what is alike counts for little.
+ */
+async function screenTwice(set: TakeSet, model: Model, first: Solution, options: SettleOptions): Promise<Screening> {
+  const screening = screenTakes(set, model, first, options);
+  const without = flaggedOf(screening);
+  if (without.size === 0 || !isGiven(first.readingUncertainty.source)) return screening;
+  return screenTakes(set, model, await solve(set, model, { ...options, without }), options);
+}
+
+function flaggedOf({ isModelFailing, setAside, takes }: Screening): Set<number> {
+  return new Set(isModelFailing ? [] : setAside.filter((t) => takes[t]!.verdict === 'flagged'));
 }
 
 /** The final solution: without the takes left out, and weighed by the scatter that was found where it can be told apart. */

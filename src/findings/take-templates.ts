@@ -1,9 +1,9 @@
 import type { Deviations } from '../estimate/scatter-of-level.ts';
 import { isGiven, type Solution } from '../estimate/solution.ts';
-import { neighbourCorrelation, shareForMean } from '../numeric/effective-share.ts';
 import { hertz } from '../quantity/frequency.ts';
 import { bandHolding, octaveBand } from '../quantity/octave-bands.ts';
 import type { TakeSet } from '../takes/take-set.ts';
+import { errorCorrelation, independentInMean } from './error-correlation.ts';
 
 /** What a take is tested for: one figure a take, made from its residuals. */
 export interface Template {
@@ -32,13 +32,14 @@ const LARGEST_GAP = 0.5;
  */
 export function takeTemplates(set: TakeSet, solution: Solution): Template[] {
   const weights = frequencyWeights(set, solution);
-  const given = givenVariances(solution);
+  const given = givenVariance(solution);
   const all = [...set.frequencies.keys()];
   const x = Float64Array.from(set.frequencies, Math.log10);
   const ends = { from: set.frequencies[0]!, to: set.frequencies.at(-1)! };
-  const share = shareForMean(neighbourCorrelation(solution.residuals, set.takes.length, all.length));
+  // Only a given variance has to be told how many frequencies are independent: other scatter is that of the figure itself.
+  const correlation = isGiven(solution.readingUncertainty.source) ? errorCorrelation(set, solution.residuals) : 0;
   const project = (members: readonly number[], centred: boolean) =>
-    projection(set, solution, { members, weights, x: centred ? x : undefined, given, share });
+    projection(set, solution, { members, weights, x: centred ? x : undefined, given, correlation });
   const templates: Template[] = [{ kind: 'constant', ...ends, deviations: project(all, false) }];
   if (all.length >= FEWEST_FOR_SLOPE) templates.push({ kind: 'slope', ...ends, deviations: project(all, true) });
   for (const band of overlappingBands(set)) {
@@ -54,7 +55,7 @@ const FEWEST_FOR_SLOPE = 4;
 /** The residuals of each third-octave band. */
 export function bandColumns(set: TakeSet, solution: Solution): BandColumns[] {
   const width = set.frequencies.length;
-  const given = givenVariances(solution);
+  const given = givenVariance(solution);
   const groups = new Map<number, number[]>();
   set.frequencies.forEach((frequency, f) => {
     const { index } = bandHolding(hertz(frequency), 3);
@@ -73,7 +74,9 @@ export function bandColumns(set: TakeSet, solution: Solution): BandColumns[] {
       return complete;
     });
     const { from, to } = octaveBand(index, 3);
-    const givenVariance = mean(frequencies.map((f) => given[f]!));
+    const givenVariance = Float64Array.from(set.takes, (_, t) =>
+      active[t] ? mean(frequencies.map((f) => given(t * width + f))) : 0,
+    );
     return {
       from,
       to,
@@ -88,16 +91,19 @@ interface Projection {
   readonly weights: Float64Array;
   /** Abscissa for a slope; absent for a mean. */
   readonly x: Float64Array | undefined;
-  readonly given: Float64Array;
-  readonly share: number;
+  /** Variance of a reading as the user gives it, by its cell. */
+  readonly given: (cell: number) => number;
+  /** Of errors at neighbouring frequencies. */
+  readonly correlation: number;
 }
 
 function projection(set: TakeSet, solution: Solution, how: Projection): Deviations {
   const width = set.frequencies.length;
   const values = new Float64Array(set.takes.length);
-  let givenVariance = 0;
+  const givenVariance = new Float64Array(set.takes.length);
+  const share = independentInMean(how.correlation, how.members.length) / how.members.length;
   const active = set.takes.map((_, t) => {
-    const there = how.members.filter((f) => !Number.isNaN(solution.residuals[t * width + f]!));
+    const there = how.members.filter((f) => how.weights[f]! > 0 && !Number.isNaN(solution.residuals[t * width + f]!));
     if (there.length === 0 || there.length < (1 - LARGEST_GAP) * how.members.length) return false;
     const weight = there.reduce((sum, f) => sum + how.weights[f]!, 0);
     const centre = how.x && there.reduce((sum, f) => sum + how.weights[f]! * how.x![f]!, 0) / weight;
@@ -109,17 +115,20 @@ function projection(set: TakeSet, solution: Solution, how: Projection): Deviatio
       const b = how.weights[f]! * basis(f);
       sum += b * solution.residuals[t * width + f]!;
       squares += b * basis(f);
-      variance += b * b * how.given[f]!;
+      variance += b * b * how.given(t * width + f);
     }
     values[t] = sum / squares;
-    givenVariance = Math.max(givenVariance, variance / squares ** 2 / how.share);
+    givenVariance[t] = variance / squares ** 2 / share;
     return true;
   });
   return { values, columns: 1, present: active, active, givenVariance };
 }
 
-// 1 / (mean absolute residual)², the wildest takes cut off, so that one resonance does not drown the rest of the range.
-function frequencyWeights(set: TakeSet, { residuals }: Solution): Float64Array {
+/**
+ * 1 / (mean absolute residual)², the wildest takes cut off, so that one resonance does not drown the rest of the range.
+ * 0 where nothing checks any reading: a residual of 0 says nothing there.
+ */
+function frequencyWeights(set: TakeSet, { residuals, redundancy }: Solution): Float64Array {
   const width = set.frequencies.length;
   const level = new Float64Array(width);
   const meanBelow = (f: number, limit: number) => {
@@ -127,30 +136,21 @@ function frequencyWeights(set: TakeSet, { residuals }: Solution): Float64Array {
     let count = 0;
     for (let t = 0; t < set.takes.length; t++) {
       const residual = Math.abs(residuals[t * width + f]!);
-      if (Number.isNaN(residual)) continue;
+      if (Number.isNaN(residual) || !(redundancy[t * width + f]! > 0)) continue;
       sum += Math.min(residual, limit);
       count++;
     }
-    return count === 0 ? 0 : sum / count;
+    return count === 0 ? Number.NaN : sum / count;
   };
   for (let f = 0; f < width; f++) level[f] = meanBelow(f, 3 * meanBelow(f, Number.POSITIVE_INFINITY));
-  const floor = mean(Array.from(level)) * 0.1;
-  return level.map((value) => (floor > 0 ? 1 / Math.max(value, floor) ** 2 : 1));
+  const checked = Array.from(level).filter((value) => !Number.isNaN(value));
+  const floor = checked.length === 0 ? 0 : mean(checked) * 0.1;
+  return level.map((value) => (Number.isNaN(value) ? 0 : floor > 0 ? 1 / Math.max(value, floor) ** 2 : 1));
 }
 
-/** Variance of one reading a frequency where the user gives it (`u_db`, averages, or one figure); 0 elsewhere. */
-function givenVariances({ readingUncertainty, residuals, patternOf }: Solution): Float64Array {
-  const width = patternOf.length;
-  const variances = new Float64Array(width);
-  if (!isGiven(readingUncertainty.source)) return variances;
-  const counts = new Float64Array(width);
-  for (let cell = 0; cell < residuals.length; cell++) {
-    if (Number.isNaN(residuals[cell]!)) continue;
-    const f = cell % width;
-    variances[f] = variances[f]! + readingUncertainty.values[cell]! ** 2;
-    counts[f] = counts[f]! + 1;
-  }
-  return variances.map((sum, f) => (counts[f]! > 0 ? sum / counts[f]! : 0));
+/** Variance of a reading by its cell where the user gives it (`u_db`, averages, or one figure); 0 elsewhere. */
+function givenVariance({ readingUncertainty: { source, values } }: Solution): (cell: number) => number {
+  return isGiven(source) ? (cell) => values[cell]! ** 2 : () => 0;
 }
 
 function overlappingBands(set: TakeSet): { from: number; to: number; members: number[] }[] {

@@ -18,11 +18,3 @@ export const EQUALLY_GOOD_RATIO = 20;
 
 /** At most this part of the takes is set aside; where more disagree, it is the model that fails. Common practice, no source. */
 export const LARGEST_FLAGGED_PART = 0.25;
-
-/**
- * A band as a whole fails where more than the first part of the units shows more partner scatter than the tolerance, and
- * more than the second is surely above it: four times as many as the 2.5 % that a 95 % interval lets pass by chance where
- * all are just at the tolerance. Common practice, no source.
- */
-export const FAILING_PART = 0.5;
-export const SURELY_FAILING_PART = 0.1;

@@ -19,14 +19,16 @@ export function chooseModel(set: TakeSet, options: ModelOptions): ModelChoice {
       reason: `The reference for ${ofOneRole.unit} is for one role, which only the directional model tells apart.`,
     };
   }
-  if (!someUnitHasBothRoles(set)) {
+  if (!someUnitHasBothRoles(set, options.lookalikes)) {
     return { kind: 'directional', reason: 'No unit is used in both roles, so that reciprocity would say nothing.' };
   }
   return choiceOf(testReciprocity(set));
 }
 
-function someUnitHasBothRoles(set: TakeSet): boolean {
-  const end = (unit: string, mount: string) => JSON.stringify([unit, mount]);
+// Look-alikes have one response together: what one emits and the other receives is one unit in both roles.
+function someUnitHasBothRoles(set: TakeSet, lookalikes: ModelOptions['lookalikes']): boolean {
+  const sameAs = (unit: string) => lookalikes.find((group) => group.includes(unit))?.[0] ?? unit;
+  const end = (unit: string, mount: string) => JSON.stringify([sameAs(unit), mount]);
   const emitters = new Set(set.takes.map((take) => end(take.emitter, take.emitterMount)));
   return set.takes.some((take) => emitters.has(end(take.receiver, take.receiverMount)));
 }

@@ -27,18 +27,23 @@ const ROLE_TITLES: Readonly<Record<Role, string>> = {
 };
 
 export const figureTexts = {
-  network(result: Result, { nodes, edges, missing, isDirected }: Network): FigureTexts {
+  network(result: Result, { nodes, edges, missing, parts, isDirected }: Network): FigureTexts {
     const flagged = edges.flatMap((edge) => edge.flagged);
     const open = nodes.filter(({ isOpen }) => isOpen).map(({ name }) => name);
     const sentences = [
       `${counted(nodes.length, 'unit')} and ${counted(edges.length, isDirected ? 'directed pair' : 'pair')} between them, from ${counted(result.set.takes.length, 'take')}.`,
+      ...(parts > 1 ? [`They are in ${parts} parts that no take connects.`] : []),
       missing.length === 0
-        ? 'Every pair was taken.'
+        ? `Every pair${parts > 1 ? ' within a part' : ''} was taken.`
         : `${counted(missing.length, 'pair')} of connected units ${missing.length === 1 ? 'was' : 'were'} not taken${missing.length <= FEW_NAMES ? `: ${listText(missing.map(([a, b]) => `${nodes[a]!.name} with ${nodes[b]!.name}`))}` : ''}.`,
       flagged.length === 0 ? 'No take disagrees.' : `Takes that disagree: ${listText(flagged, FEW_NAMES)}.`,
       ...(open.length > 0 ? [`Without a level at some frequency: ${listText(open)}.`] : []),
     ];
-    return { title: 'Who was measured against whom', description: sentences.join(' '), notes: [sentences[1]!] };
+    return {
+      title: 'Who was measured against whom',
+      description: sentences.join(' '),
+      notes: sentences.slice(1, parts > 1 ? 3 : 2),
+    };
   },
 
   responses(
@@ -61,7 +66,7 @@ export const figureTexts = {
         ({ name, dependent }) =>
           `Hatched: ${name} depends on its partner at ${bandsText(dependent.filter(({ verdict }) => verdict === 'broken'))}; do not use it elsewhere there.`,
       ),
-      ...(onDatum.length > 0 ? [`On a datum, named below: ${listText(onDatum, FEW_NAMES)}.`] : []),
+      ...(onDatum.length > 0 ? [`On a datum, named under The bench: ${listText(onDatum, FEW_NAMES)}.`] : []),
       ...(isThinned
         ? [
             `Of ${frequencies.length} frequencies, the highest and the lowest level in each pixel are drawn, so that no peak is lost; the table has all.`,
@@ -174,7 +179,7 @@ export const figureTexts = {
     return {
       title: 'What the uncertainty is made of',
       description: `Parts of the variance of each response as seated, by third-octave band: ${listText(shares)}.`,
-      notes: ['Of the level as seated; variances add, so that the parts fill the whole. Letters as in the legend.'],
+      notes: ['Of the level as seated. Variances add. Letters as in the legend.'],
     };
   },
 

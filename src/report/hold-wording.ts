@@ -1,4 +1,3 @@
-import { failingBands } from '../findings/failing-bands.ts';
 import type { HoldFinding } from '../findings/holds.ts';
 import { roundedText } from '../quantity/rounding.ts';
 import { bandsWith, type HeldRun, joinedBands, type UnitHold, unitHolds } from './held-bands.ts';
@@ -87,21 +86,21 @@ function named(units: readonly UnitHold[], verdict: Verdict, verb: string): stri
 
 /** Bands in which the additive model itself fails; absent where there are none. */
 export function failingStatement({ examination, tolerance }: Result): Statement | undefined {
-  const failing = failingBands(examination.holds, tolerance);
+  const failing = examination.failing;
   if (failing.length === 0) return undefined;
   const all = new Set(examination.holds.map(({ from }) => from)).size;
   const where = failing.length === all ? `in every band (${bandsText(failing)})` : `at ${bandsText(failing)}`;
   const below = failing.length === all ? 'No level below can be relied on' : 'No level there can be relied on';
   return {
-    text: `THE ADDITIVE MODEL FAILS ${where}: most units seem to depend on their partner by more than ${tolerance} dB. ${below}; holds.csv tells unit by unit. ${FIRST_LOOK}`,
+    text: `THE ADDITIVE MODEL FAILS ${where}: a typical unit depends on its partner by ${Math.max(...failing.map(({ typical }) => typical)).toPrecision(2)} dB, more than the tolerance of ${tolerance} dB. ${below}; holds.csv tells unit by unit. ${FIRST_LOOK}`,
     tone: 'bad',
   };
 }
 
 /** Whether no band is left in which single units could be told apart from the rest. */
-export function failsInEveryBand({ examination, tolerance }: Result): boolean {
+export function failsInEveryBand({ examination }: Result): boolean {
   const bands = new Set(examination.holds.map(({ from }) => from)).size;
-  return bands > 0 && failingBands(examination.holds, tolerance).length === bands;
+  return bands > 0 && examination.failing.length === bands;
 }
 
 /** What to do where the model as a whole does not fit. */

@@ -1,10 +1,10 @@
 import type { ExtraTake, OpenFinding } from '../findings/examination.ts';
 import { bandsWith, unitHolds } from './held-bands.ts';
 import { bandsText } from './hold-wording.ts';
-import { extraTakeText, openSentence } from './open-wording.ts';
+import { extraTakeText } from './open-wording.ts';
 import type { Result } from './result.ts';
 import { adviceText, cureText, flaggedTakes, takeName, tieGroups } from './take-wording.ts';
-import { counted, FEW_NAMES, listText } from './wording.ts';
+import { atFrequencies, counted, FEW_NAMES, listText } from './wording.ts';
 
 /** Something to do next, and what it buys. */
 export interface NextStep {
@@ -14,13 +14,20 @@ export interface NextStep {
 
 /** What to measure next, the most pressing first; empty where nothing is called for. */
 export function nextSteps(result: Result): NextStep[] {
-  return [
+  const all = [
     ...flaggedSteps(result),
     ...tieSteps(result),
     ...openSteps(result),
     ...checkSteps(result),
     ...scatterSteps(result),
   ];
+  // One take may serve several ends: it is told once.
+  const steps = new Map<string, NextStep>();
+  for (const { what, why } of all) {
+    const same = steps.get(what);
+    steps.set(what, same === undefined ? { what, why } : { what, why: `${same.why} ${why}` });
+  }
+  return [...steps.values()];
 }
 
 function flaggedSteps(result: Result): NextStep[] {
@@ -49,8 +56,16 @@ function tieSteps({ set, examination }: Result): NextStep[] {
 function openSteps({ set, examination }: Result): NextStep[] {
   return examination.open.map((finding) => ({
     what: cureOf(finding),
-    why: openSentence(finding, set.frequencies),
+    why: gainOfCure(finding, set.frequencies),
   }));
+}
+
+/** What the cure of a freedom buys; why it is open stands with the bench. */
+function gainOfCure({ kind, status, responses, frequencies: at }: OpenFinding, frequencies: Float64Array): string {
+  const [names, where] = [listText(responses, FEW_NAMES), atFrequencies(at, frequencies)];
+  if (status === 'datum') return `It puts what is measured in the place of the datum of ${names} ${where}.`;
+  if (kind === 'one constant') return `It ties ${names} to the others ${where}.`;
+  return `It gives ${names} a level ${where}.`;
 }
 
 function cureOf({ kind, extraTakes }: OpenFinding): string {

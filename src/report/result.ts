@@ -1,4 +1,5 @@
 import type { ResponseBudget } from '../estimate/budget.ts';
+import type { MonteCarlo } from '../estimate/monte-carlo.ts';
 import type { Solution } from '../estimate/solution.ts';
 import type { Examination, OpenFinding } from '../findings/examination.ts';
 import type { Patterns } from '../model/find-patterns.ts';
@@ -34,6 +35,8 @@ export interface Result {
   readonly solution: Solution;
   /** Where the uncertainty of each response comes from; absent where nobody asked. */
   readonly budget?: readonly ResponseBudget[];
+  /** What a Monte Carlo check found; absent where none was asked for. */
+  readonly monteCarlo?: MonteCarlo | undefined;
   readonly examination: Examination;
 }
 

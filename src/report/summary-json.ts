@@ -3,6 +3,7 @@ import { agreementRecord } from './agreement-json.ts';
 import { benchCounts } from './bench-counts.ts';
 import { budgetRecord } from './budget-json.ts';
 import { availability, jsonFigure, jsonLevel } from './json-text.ts';
+import { monteCarloRecord } from './monte-carlo-json.ts';
 import { roundedFrequency } from './number-text.ts';
 import { placedUnit } from './response-name.ts';
 import type { InputSummary, Result } from './result.ts';
@@ -44,6 +45,7 @@ export function summaryRecord(result: Result): Readonly<Record<string, unknown>>
       })),
     },
     budget: budgetRecord(result),
+    monte_carlo: monteCarloRecord(result),
     whole: {
       degrees_of_freedom: jsonFigure(whole.degreesOfFreedom),
       rms_residual_db: jsonLevel(whole.rmsResidual),

@@ -5,6 +5,7 @@ import { benchCounts } from './bench-counts.ts';
 import { budgetSentence } from './budget-json.ts';
 import { bandsWith, unitHolds } from './held-bands.ts';
 import { dependenceSentences, holdsCell } from './hold-wording.ts';
+import { monteCarloSentence } from './monte-carlo-json.ts';
 import { openSentence } from './open-wording.ts';
 import { outputFiles } from './output-files.ts';
 import { placedUnit, responseName } from './response-name.ts';
@@ -62,12 +63,13 @@ function unitTable(result: Result, style: TextStyle): string[] {
   // Where every level stands at every frequency, the verdict has said so.
   const hasCounts = examination.units.some(({ counts }) => counts.datum + counts.open > 0);
   const isTestable = examination.holds.some(({ verdict }) => verdict !== 'not testable');
-  const hasReseat = examination.units.some((unit) => !Number.isNaN(unit.medianReseatExpanded));
-  const hasPartner = examination.units.some((unit) => !Number.isNaN(unit.medianPartnerExpanded));
+  const hasReseat = examination.units.some((unit) => !Number.isNaN(unit.medianReseatUncertainty));
+  const hasPartner = examination.units.some((unit) => !Number.isNaN(unit.medianPartnerUncertainty));
   const header = [
     'unit',
     'level, dB',
     'U, dB',
+    ...(hasReseat || hasPartner ? ['u seated'] : []),
     ...(hasReseat ? ['reseated'] : []),
     ...(hasPartner ? ['partner'] : []),
     ...(hasCounts ? ['ok', 'datum', 'open'] : []),
@@ -81,8 +83,9 @@ function unitTable(result: Result, style: TextStyle): string[] {
       cells: [
         responseName(response),
         ...levelCells(unit),
-        ...(hasReseat ? [uncertaintyCell(unit.medianReseatExpanded)] : []),
-        ...(hasPartner ? [uncertaintyCell(unit.medianPartnerExpanded)] : []),
+        ...(hasReseat || hasPartner ? [uncertaintyCell(unit.medianUncertainty)] : []),
+        ...(hasReseat ? [uncertaintyCell(unit.medianReseatUncertainty)] : []),
+        ...(hasPartner ? [uncertaintyCell(unit.medianPartnerUncertainty)] : []),
         ...(hasCounts ? [ok, datum, open].map(count) : []),
         ...(isTestable ? [holdsCell(hold)] : []),
       ],
@@ -91,8 +94,9 @@ function unitTable(result: Result, style: TextStyle): string[] {
   });
   const caption = [
     `level: median over frequency; U: its typical expanded uncertainty (${percentText(coverage)})`,
-    ...(hasReseat ? ['reseated: U for the unit mounted once more'] : []),
-    ...(hasPartner ? ['partner: U for it on another partner'] : []),
+    ...(hasReseat || hasPartner ? ['u: standard uncertainty in dB as seated'] : []),
+    ...(hasReseat ? ['reseated: u for the unit mounted once more'] : []),
+    ...(hasPartner ? ['partner: u for it on another partner'] : []),
     ...(hasCounts ? ['ok, datum, open: number of frequencies'] : []),
     ...(isTestable ? ['holds: the bands where it does not depend on its partner'] : []),
   ];
@@ -114,11 +118,12 @@ function uncertaintyCell(expanded: number): string {
 }
 
 /** What the figures rest on. */
-function basisLines({ model, solution, budget = [] }: Result): string[] {
+function basisLines({ model, solution, budget = [], monteCarlo }: Result): string[] {
   const sentences = [
     ...modelSentences(model),
     solution.readingUncertainty.statement,
     budgetSentence({ budget }),
+    monteCarloSentence(monteCarlo),
     gainSentence({ model, solution }),
   ];
   return sentences.filter((sentence) => sentence !== '').flatMap((sentence) => wrapped(sentence));
@@ -194,7 +199,8 @@ export function listed(heading: string, points: readonly string[], style: TextSt
 
 function fileLines(result: Result, folder: string | undefined, style: TextStyle): string[] {
   if (folder === undefined) return [];
-  const names = outputFiles(result).map((file) => file.name);
+  // The page first: it is the one to open.
+  const names = ['report.html', ...outputFiles(result).map((file) => file.name), 'figures'];
   return [
     ...wrapped(`Written to ${folder}:`).map(style.strong),
     ...wrapped(names.join(', '), { width: TERMINAL_WIDTH - 2 }).map((line) => `  ${line}`),

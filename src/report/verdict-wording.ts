@@ -1,5 +1,4 @@
 import type { TakeFinding, UnitFinding } from '../findings/examination.ts';
-import { failingBands } from '../findings/failing-bands.ts';
 import type { Model } from '../model/model.ts';
 import { roundedText } from '../quantity/rounding.ts';
 import type { UnitStructure } from './bench-structure.ts';
@@ -46,7 +45,7 @@ function failures(result: Result): Statement[] {
 }
 
 /** How many takes agree, which do not, and what became of them. */
-function takeStatements({ set, examination, tolerance }: Result): Statement[] {
+function takeStatements({ set, examination }: Result): Statement[] {
   const { takes, whole } = examination;
   // Said in other words already: nothing is spare, or the model fails.
   if (whole.degreesOfFreedom < NONE_SPARE || whole.isModelFailing) return [];
@@ -76,7 +75,7 @@ function takeStatements({ set, examination, tolerance }: Result): Statement[] {
     statements.push({ text: `${names(tie)} are tied: one of them is at fault, and nothing tells which.`, tone: 'bad' });
   }
   const unchecked = takes.filter(({ verdict }) => verdict === 'uncheckable').length;
-  if (statements.length === 0 && failingBands(examination.holds, tolerance).length > 0) {
+  if (statements.length === 0 && examination.failing.length > 0) {
     statements.push({ text: 'No single take stands out from that.', tone: 'plain' });
   } else if (statements.length === 0) {
     const rest = unchecked === 0 ? '' : `; nothing checks ${unchecked} of ${all}`;

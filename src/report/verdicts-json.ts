@@ -1,6 +1,5 @@
 import type { TakeFinding, TakeVerdict } from '../findings/examination.ts';
 import type { Explanation, RankedExplanation } from '../findings/explanations.ts';
-import { failingBands } from '../findings/failing-bands.ts';
 import type { HoldFinding } from '../findings/holds.ts';
 import { jsonFigure, jsonLevel } from './json-text.ts';
 import { roundedFrequency } from './number-text.ts';
@@ -120,12 +119,11 @@ export function mountingRecord({ examination, tolerance }: Result): Readonly<Rec
     counts: counts(HOLDS, holds),
     broken: of('broken'),
     strained: of('strained'),
-    model_fails: failingBands(holds, tolerance).map((band) => ({
+    model_fails: examination.failing.map((band) => ({
       from_hz: roundedFrequency(band.from),
       to_hz: roundedFrequency(band.to),
-      units: band.units,
-      above_tolerance: band.aboveTolerance,
-      broken: band.broken,
+      typical_partner_db: jsonFigure(band.typical),
+      low_db: jsonFigure(band.low),
     })),
   };
 }

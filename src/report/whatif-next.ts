@@ -48,7 +48,7 @@ function openingSentence(run: string, { takes, mean, worst, worstUnit }: NextPla
 }
 
 /** What a take is for, in words. */
-export function purposeText({ purpose, about }: Pick<NextTakes, 'purpose' | 'about'>): string {
+function purposeText({ purpose, about }: Pick<NextTakes, 'purpose' | 'about'>): string {
   const names = listText(about, FEW_NAMES);
   const texts: Readonly<Record<NextPurpose, string>> = {
     close: `gives ${names} a level`,

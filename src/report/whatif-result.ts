@@ -12,6 +12,8 @@ export interface SuggestedTakes {
   readonly criterion: Criterion;
   /** Minutes that were to be kept; absent where a number of takes was asked for. */
   readonly budget: number | undefined;
+  /** Whether nothing but the quickest set fits, so that no choice was left. */
+  readonly isCheapest: boolean;
 }
 
 /** A run sheet to be written: a file of takes, and a page to carry. */

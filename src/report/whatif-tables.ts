@@ -1,5 +1,5 @@
 import type { AssumedBand } from '../whatif/assumed-scatter.ts';
-import type { PlannedSeating } from '../whatif/design.ts';
+import { type PlannedSeating, seatingOf } from '../whatif/design.ts';
 import type { Prediction, TakePrediction, UnitPrediction } from '../whatif/predict.ts';
 import { type Column, csvFile } from './csv-file.ts';
 import { jsonText } from './json-text.ts';
@@ -51,7 +51,7 @@ interface DesignRow {
 const DESIGN: readonly Column<DesignRow>[] = [
   { name: 'emitter', text: ({ seating }) => seating.emitter },
   { name: 'receiver', text: ({ seating }) => seating.receiver },
-  { name: 'seatings', text: ({ seatings }) => String(seatings) },
+  { name: 'seatings', text: ({ seatings }) => (seatings === 0 ? '' : String(seatings)) },
   { name: 'repeats', text: ({ seating }) => String(seating.repeats) },
   { name: 'emitter_mount', text: ({ seating }) => seating.emitterMount },
   { name: 'receiver_mount', text: ({ seating }) => seating.receiverMount },
@@ -78,15 +78,14 @@ export function whatifFiles(result: WhatifResult): OutputFile[] {
 function designRows({ bench: { design } }: Prediction): DesignRow[] {
   const rows = new Map<string, DesignRow>();
   for (const seating of design.seatings) {
-    const key = JSON.stringify({ ...seating, kind: '' });
+    const key = JSON.stringify({ ...seating, kind: '', emitterSeating: '', receiverSeating: '' });
     rows.set(key, { seating, seatings: (rows.get(key)?.seatings ?? 0) + 1 });
   }
-  const blank = { emitterMount: '', receiverMount: '', path: '', session: '', repeats: 1, minutes: undefined };
   return [
     ...rows.values(),
     ...design.forbidden.map(
       ([emitter, receiver]): DesignRow => ({
-        seating: { emitter, receiver, ...blank, kind: 'planned' },
+        seating: seatingOf(emitter, receiver),
         seatings: 0,
       }),
     ),

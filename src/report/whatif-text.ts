@@ -11,8 +11,10 @@ import {
   designSentence,
   designVerdict,
   figureText,
+  freshSentence,
   meritValue,
   minutesText,
+  openAsTold,
   scatterSentence,
   seatingText,
   stretchText,
@@ -227,19 +229,23 @@ function bandTable({ bands }: Prediction, style: TextStyle): string[] {
   ];
 }
 
-function openPoints({ open, bench }: Prediction): string[] {
-  const points = open.map((finding) => openSentence(finding, bench.set.frequencies));
+function openPoints(prediction: Prediction): string[] {
+  const { open, frequencies } = openAsTold(prediction);
+  const points = open.map((finding) => openSentence(finding, frequencies));
   const more = points.length - MOST_POINTS;
   return more > 0 ? [...points.slice(0, MOST_POINTS), `And ${counted(more, 'more')}.`] : points;
 }
 
-function orderLines({ ordered }: WhatifResult): string[] {
-  if (ordered === undefined) return [];
+function orderLines({ ordered, predictions }: WhatifResult): string[] {
+  const { seatings } = predictions.at(-1)!.bench.design;
+  if (ordered === undefined) return wrapped(freshSentence(seatings));
   const { mountings, given, isOptimal } = ordered;
   const saved =
     given > mountings ? `, ${given - mountings} fewer than in the order given` : ', as many as in the order given';
   const best = isOptimal ? 'No order needs fewer.' : 'There may be an order with fewer.';
-  return wrapped(`In order: ${counted(mountings, 'mounting')} of a unit${saved}. ${best}`);
+  return wrapped(
+    `In order: ${counted(mountings, 'mounting')} of a unit${saved}, since a unit that is needed next stays mounted. ${best} Pairs that share a seating share its error: u counts that in; --fresh mounts both units anew for every pair.`,
+  );
 }
 
 function rehearsalLines({ rehearsal, coverage }: WhatifResult, style: TextStyle): string[] {

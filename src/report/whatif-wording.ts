@@ -1,4 +1,5 @@
 /** Sentences about designs: what they will deliver, what they rest on, what was suggested. */
+import type { OpenFinding } from '../findings/examination.ts';
 import { frequencyText } from '../quantity/frequency.ts';
 import { roundedText } from '../quantity/rounding.ts';
 import type { AssumedBand } from '../whatif/assumed-scatter.ts';
@@ -133,16 +134,25 @@ const WANTED: Readonly<Record<Criterion, string>> = {
   checks: 'the smallest shift that is found in every take',
 };
 
+/** How the pairs of a plan without an order are mounted; empty where none is to come. */
+export function freshSentence(seatings: readonly PlannedSeating[]): string {
+  const isToCome = seatings.some(({ kind }) => kind !== 'made');
+  return isToCome ? 'Both units of every pair to come are taken as mounted anew for it.' : '';
+}
+
 /** What was suggested, how surely it is the best, and which constraints it does not meet. */
-export function suggestionSentences({ suggestion, criterion, budget }: SuggestedTakes): string[] {
+export function suggestionSentences({ suggestion, criterion, budget, isCheapest }: SuggestedTakes): string[] {
   const { steps, isExhaustive, tried, hasAgain } = suggestion;
   const last = steps.at(-1)!.merit;
   const within = budget === undefined ? '' : ` within ${minutesText(budget)}`;
-  const surely = isExhaustive
-    ? `The best of all ${tried} possible sets: every one was tried.`
-    : `The best that an exchange from ${tried} starts found; there may be a better one.`;
+  const surely = isCheapest
+    ? 'Only the quickest set fits: it was not chosen for how well it does.'
+    : isExhaustive
+      ? `The best of all ${tried} possible sets: every one was tried.`
+      : `The best that an exchange from ${tried} starts found; there may be a better one.`;
   return [
     `Suggested: ${counted(steps.length, 'mounted pair')}${within}, for ${WANTED[criterion]}. ${surely}`,
+    'The search takes both units of every pair as mounted anew for it.',
     ...(hasAgain ? ['New pairs alone were not enough, or --again was given: pairs are mounted again.'] : []),
     ...(last.open > 0
       ? [`CANNOT BE MET: with these takes ${counted(last.open, 'unit')} still ${hasHave(last.open)} no level.`]
@@ -160,6 +170,16 @@ export function meritValue({ open, uncheckable, value }: Merit, criterion: Crite
   if (open > 0) return Number.NaN;
   if (criterion !== 'checks') return value;
   return uncheckable > 0 || !Number.isFinite(value) ? Number.NaN : DETECTABILITY * value;
+}
+
+/** What a design leaves open. Without frequencies of its own, what is open is so at every one. */
+export function openAsTold({ open, bench: { set } }: Prediction): {
+  readonly open: readonly OpenFinding[];
+  readonly frequencies: Float64Array;
+} {
+  if (set.frequencies.length > 1) return { open, frequencies: set.frequencies };
+  const both = Float64Array.from([0, 1], (k) => set.frequencies[0]! + k);
+  return { open: open.map((finding) => ({ ...finding, frequencies: [0, 1] })), frequencies: both };
 }
 
 /** `10 kHz to 20 kHz`; `all frequencies` where one figure serves all. */

@@ -74,7 +74,7 @@ function takeId(index: number, count: number): string {
   return `T${String(index + 1).padStart(Math.max(3, String(count).length), '0')}`;
 }
 
-function withinBand(readings: Readings, band: FrequencyRange, notices: string[]): Readings {
+export function withinBand(readings: Readings, band: FrequencyRange, notices: string[]): Readings {
   const keep: number[] = [];
   // 16.1 kHz is 16100.000000000002 Hz: the ends are included as a reader understands them.
   const [from, to] = [band.from * (1 - SAME_FREQUENCY), band.to * (1 + SAME_FREQUENCY)];

@@ -39,6 +39,8 @@ export function noiseLevelPart(factor: number): number {
 /** Readings from which the background noise is subtracted. */
 export interface NoiseSubtracted {
   readonly readings: Readings;
+  /** Their levels as read, in dB. */
+  readonly asRead: Float64Array;
   /** `NoiseCorrection.factor` of each reading that is left; absent where no noise is given. */
   readonly factor: Float64Array | undefined;
   readonly unused: readonly UnusedRow[];
@@ -48,7 +50,9 @@ export interface NoiseSubtracted {
 /** Subtracts the noise of each reading that has one; readings with less than 3 dB of clearance become unused. */
 export function subtractNoise(readings: Readings): NoiseSubtracted {
   const { noise } = readings;
-  if (noise === undefined || noise.every(Number.isNaN)) return { readings, factor: undefined, unused: [], notices: [] };
+  if (noise === undefined || noise.every(Number.isNaN)) {
+    return { readings, asRead: readings.level, factor: undefined, unused: [], notices: [] };
+  }
   const unused: UnusedRow[] = [];
   const keep: number[] = [];
   const levels: number[] = [];
@@ -75,8 +79,10 @@ export function subtractNoise(readings: Readings): NoiseSubtracted {
       : [
           `Background noise (noise_db) was subtracted from ${corrected} of ${readings.count} readings, at most ${largest.toPrecision(2)} dB.`,
         ];
+  const left = only(readings, keep);
   return {
-    readings: { ...only(readings, keep), level: Float64Array.from(levels) },
+    readings: { ...left, level: Float64Array.from(levels) },
+    asRead: left.level,
     factor: Float64Array.from(factors),
     unused,
     notices,

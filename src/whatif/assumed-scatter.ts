@@ -18,7 +18,7 @@ export type Ladder = Readonly<Record<LadderStep, number>>;
 export const LADDER_STEPS: readonly LadderStep[] = ['repeat', 'reseat', 'partner'];
 
 /** What a contact transducer on a bench may show, in dB, where nobody knows better. Common practice, no source. */
-export const DEFAULT_LADDER: Ladder = { repeat: 0.1, reseat: 0.5, partner: 0.3 };
+const DEFAULT_LADDER: Ladder = { repeat: 0.1, reseat: 0.5, partner: 0.3 };
 
 /** A figure for all frequencies, or figures band by band. */
 export type StepFigure = number | readonly { readonly from: number; readonly to: number; readonly value: number }[];

@@ -1,8 +1,7 @@
 import type { AssumedBand } from './assumed-scatter.ts';
-import { weightOfChain } from './planned-covariance.ts';
 
 /**
- * What a chain with certain seatings says. The information on a shift of one of its takes is a + b · left, the least over
+ * What a chain with certain seatings, all for it alone, says. The information on a shift of one of its takes is a + b · left, the least over
  * its seatings, with `left` = 1 − weight × variance of the fitted value.
  */
 export interface ChainInformation {
@@ -36,5 +35,5 @@ export function chainInformation(
     // Seatings of more takes are checked by their own repeats at least.
     if (a + b / 2 < least.a + least.b / 2) least = { a, b };
   }
-  return { weight: weightOfChain(counts, band), ...least };
+  return { weight: 1 / (band.partner ** 2 + 1 / precision), ...least };
 }

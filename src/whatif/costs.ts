@@ -19,15 +19,39 @@ export interface BenchCost {
   readonly minutes: number;
 }
 
-/** What the seatings cost in the order given, session by session; those that were made already cost nothing. */
+/** What the seatings that are still to come cost in the order given, mounted as their labels say. */
 export function costOf(seatings: readonly PlannedSeating[], times: BenchTimes): BenchCost {
   const due = seatings.filter(({ kind }) => kind !== 'made');
-  const mountings = bySession(due).reduce((sum, own) => sum + mountingsInOrder(own), 0);
+  const mountings = mountingsBefore(due).reduce((sum, units) => sum + units.length, 0);
   const atTakes = due.reduce((sum, { minutes, repeats }) => sum + repeats * (minutes ?? times.take), 0);
   return { takes: countTakes(due), mountings, minutes: atTakes + mountings * times.reseat };
 }
 
-/** Acts of mounting in the order given. */
+/**
+ * Units that are mounted before each seating, as `S1` or `S1@clamped`: both, unless a unit stands on the bench with the
+ * same seating label.
+ */
+export function mountingsBefore(seatings: readonly PlannedSeating[]): string[][] {
+  let onBench = new Map<string, string | undefined>();
+  let session: string | undefined;
+  return seatings.map((seating) => {
+    if (seating.session !== session) onBench = new Map();
+    session = seating.session;
+    const now = new Map([
+      [placeName(seating.emitter, seating.emitterMount), seating.emitterSeating],
+      [placeName(seating.receiver, seating.receiverMount), seating.receiverSeating],
+    ]);
+    const mounted = [...now].filter(([place, label]) => label === undefined || onBench.get(place) !== label);
+    onBench = now;
+    return mounted.map(([place]) => place);
+  });
+}
+
+function placeName(unit: string, mount: string): string {
+  return mount === '' ? unit : `${unit}@${mount}`;
+}
+
+/** Acts of mounting in the order given, where a unit that is needed next stays on the bench. */
 export function mountingsInOrder(seatings: readonly PlannedSeating[]): number {
   return walker(walkPlan(seatings)).mountings([...seatings.keys()]);
 }

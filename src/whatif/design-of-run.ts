@@ -22,7 +22,7 @@ export function designOfRun(name: string, { takes }: TakeSet, without: ReadonlyS
     ]);
     const seating = found.get(key);
     const repeats = (seating?.repeats ?? 0) + 1;
-    const labels = { emitterMount, receiverMount, path, session };
+    const labels = { emitterMount, receiverMount, path, session, emitterSeating, receiverSeating };
     found.set(key, seatingOf(emitter, receiver, { ...labels, repeats, kind: 'made' }));
   });
   const seatings = [...found.values()];

@@ -13,6 +13,12 @@ export interface PlannedSeating {
   readonly repeats: number;
   /** Minutes that one take lasts; absent where the general figure holds. */
   readonly minutes: number | undefined;
+  /**
+   * Which seating of the unit it is: the same label twice, and the unit stays mounted in between. Absent: both units are
+   * mounted anew for this seating alone.
+   */
+  readonly emitterSeating: string | undefined;
+  readonly receiverSeating: string | undefined;
   /** `made`: taken already; `added`: suggested; `control`: the same pair at start, middle and end of the run. */
   readonly kind: 'planned' | 'made' | 'added' | 'control';
 }
@@ -30,7 +36,7 @@ export interface Design {
   readonly forbidden: readonly UnitPair[];
 }
 
-/** A seating of two units with nothing said of mounts, path or session. */
+/** A seating of two units, both mounted for it alone, with nothing said of mounts, path or session. */
 export function seatingOf(
   emitter: string,
   receiver: string,
@@ -45,6 +51,8 @@ export function seatingOf(
     session: '',
     repeats: 1,
     minutes: undefined,
+    emitterSeating: undefined,
+    receiverSeating: undefined,
     kind: 'planned',
     ...more,
   };

@@ -1,4 +1,4 @@
-import { randomStream } from '../numeric/random.ts';
+import { type RandomStream, randomStream } from '../numeric/random.ts';
 import type { CandidateBench } from './candidate-bench.ts';
 import { type Criterion, isBetter, type Merit } from './criterion.ts';
 import { type TrialSet, trialSet } from './trial-set.ts';
@@ -29,9 +29,11 @@ export interface FoundSet {
 /** Up to so many sets are all tried. */
 const MOST_SETS = 20_000;
 /** Work that the exchange is given, in candidates looked at, each a few hundred operations: a few seconds. */
-const EXCHANGE_WORK = 1_500_000;
+const EXCHANGE_WORK = 1_000_000;
 const FEWEST_STARTS = 2;
-const MOST_STARTS = 40;
+const MOST_STARTS = 150;
+/** Part of the best set that is thrown away, at random, before every second start. */
+const SHAKEN_PART = 1 / 3;
 /** Passes of an exchange that are reckoned with when starts are counted; it goes on as long as it gains. */
 const USUAL_PASSES = 4;
 
@@ -102,7 +104,8 @@ export function tryEverySet(bench: CandidateBench, { count, most, criterion, onP
 
 /**
  * Exchange: from a start, each added chain in turn is taken out and the best candidate put in its place, as long as that
- * gains; the best of a greedy start and several random ones is kept.
+ * gains; the best of several starts is kept: a greedy one, random ones, and,
+ * by turns with these, the best set so far with a third of it thrown away.
  * Source: Fedorov 1972, Theory of Optimal Experiments, section 3.3; Atkinson & Donev 1992, Optimum Experimental Designs,
  * chapter 15 (both recalled from memory).
  */
@@ -116,18 +119,33 @@ export function exchange(bench: CandidateBench, options: SearchOptions): FoundSe
     const tell = (part: number) => onProgress?.(start + part, starts);
     const set = trialSet(bench, criterion, new Int32Array(bench.chains.length));
     if (start === 0) for (let k = 0; k < count; k++) set.change(bestToAdd(set, items, options).chain, 1);
-    else addAtRandom(set, items, options, seed, start);
+    else startAtRandom(set, items, options, randomStream(seed + start), start % 2 === 0 ? best!.added : undefined);
     const merit = exchanged(set, items, options, tell);
     if (best === undefined || isBetter(merit, best.merit)) best = { added: Int32Array.from(set.added), merit };
   }
   return { ...best!, isExhaustive: false, tried: starts };
 }
 
-function addAtRandom(set: TrialSet, items: readonly number[], options: SearchOptions, seed: number, start: number) {
-  const stream = randomStream(seed, start);
-  for (let left = options.count; left > 0; ) {
+/** A set at random; or one that keeps two thirds of another. */
+function startAtRandom(
+  set: TrialSet,
+  items: readonly number[],
+  { count, most }: SearchOptions,
+  stream: RandomStream,
+  near: Int32Array | undefined,
+): void {
+  let left = count;
+  if (near !== undefined) {
+    const kept = items.flatMap((chain) => new Array<number>(near[chain]!).fill(chain));
+    for (let shaken = Math.max(2, Math.round(SHAKEN_PART * count)); shaken > 0 && kept.length > 0; shaken--) {
+      kept.splice(stream.below(kept.length), 1);
+    }
+    for (const chain of kept) set.change(chain, 1);
+    left -= kept.length;
+  }
+  while (left > 0) {
     const chain = items[stream.below(items.length)]!;
-    if (set.added[chain]! >= options.most) continue;
+    if (set.added[chain]! >= most) continue;
     set.change(chain, 1);
     left--;
   }

@@ -22,20 +22,22 @@ export function knownScatter(
     columns: 1,
     present: takes,
     active: takes,
-    givenVariance: 0,
+    givenVariance: new Float64Array(takes.length),
   };
   const half = (deviation: number) => ({
     shares: new Float64Array(n).fill(deviation ** 2 / 2),
     dof: new Float64Array(n).fill(Number.POSITIVE_INFINITY),
   });
+  const takeVariance = new Float64Array(takes.length).fill(Math.max(ROUNDING, repeat ** 2));
   const known: LevelScatter = {
-    repeatVariance: Math.max(ROUNDING, repeat ** 2),
+    repeatVariance: takeVariance[0]!,
+    takeVariance,
     repeatDof: Number.POSITIVE_INFINITY,
     seating: half(reseat),
     partner: half(partner),
     partnerDof: 0,
     isKnown: true,
-    fitted: meansOfSeats(layout, deviations),
+    fitted: meansOfSeats(layout, deviations, takeVariance),
     deviations,
   };
   return refitLevel(layout, n, known, takes);

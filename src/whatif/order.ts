@@ -7,7 +7,7 @@ import { type WalkPlan, walker, walkPlan } from './mounting-walk.ts';
 export interface OrderedSeatings {
   /** Those that are still to be made, in the new order. */
   readonly seatings: readonly PlannedSeating[];
-  /** Acts of mounting one unit, in this order and in the one given. */
+  /** Acts of mounting one unit, in this order and in the one given, where a unit that is needed next stays mounted. */
   readonly mountings: number;
   readonly given: number;
   /** Whether no order needs fewer, because all were tried or the least that is possible was reached. */
@@ -15,7 +15,7 @@ export interface OrderedSeatings {
 }
 
 /** So many seatings or fewer are ordered by trying all orders. */
-export const MOST_TRIED = 9;
+const MOST_TRIED = 9;
 /** Beyond so many seatings the order is made step by step, and not bettered by exchanges, which would take minutes. */
 const MOST_BETTERED = 120;
 const RESTARTS = 6;

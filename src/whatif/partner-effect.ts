@@ -1,7 +1,7 @@
 import type { ChainLayout } from '../estimate/chain-groups.ts';
+import type { LevelScatter } from '../estimate/scatter-of-level.ts';
 import { fUpper, fUpperQuantile } from '../numeric/f-distribution.ts';
 import type { AssumedBand } from './assumed-scatter.ts';
-import type { PlannedCovariance } from './planned-covariance.ts';
 
 /** What a design could find of a unit whose response depends on its partner. */
 export interface PartnerTest {
@@ -39,8 +39,8 @@ const NOT_TESTABLE: PartnerTest = { smallest: Number.NaN, chance: Number.NaN };
  */
 export function partnerTest(
   layout: ChainLayout,
-  { chainWeight, fittedVariance }: PlannedCovariance,
-  { reseat, repeat, partner }: AssumedBand,
+  { fitted }: LevelScatter,
+  { partner }: AssumedBand,
   links: ReadonlySet<number>,
   { risk, power, effect }: PartnerTestOptions,
 ): PartnerTest {
@@ -49,14 +49,13 @@ export function partnerTest(
   let dof = 0;
   let expected = 0;
   let share = 0;
-  layout.groups.forEach(({ ends, seatings }, chain) => {
+  layout.groups.forEach(({ ends }, chain) => {
     const own = ends.filter((end) => links.has(end)).length;
-    const left = 1 - chainWeight[chain]! * fittedVariance[chain]!;
+    const left = 1 - fitted.chainWeight[chain]! * fitted.leverageFactor[chain]!;
     if (own === 0 || left < UNCHECKED) return;
-    const precision = seatings.reduce((sum, takes) => sum + 1 / (reseat ** 2 + repeat ** 2 / takes.length), 0);
     dof += left;
     // The other end's share belongs to what is expected, the unit's own does not.
-    expected += left * (1 / precision + ((2 - own) * partner ** 2) / 2);
+    expected += left * (1 / fitted.chainPrecision[chain]! + ((2 - own) * partner ** 2) / 2);
     share += left * own;
   });
   if (dof < FEWEST_DOF || !(expected > 0)) return NOT_TESTABLE;

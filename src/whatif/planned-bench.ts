@@ -44,7 +44,7 @@ export function plannedBench(
   const takes = design.seatings.flatMap((seating, s) =>
     Array.from({ length: seating.repeats }, (_, repeat) => {
       seatingOfTake.push(s);
-      return takeOf(seating, seatingOfTake.length - 1, String(s + 1), String(s + 1), repeat);
+      return takeOf(seating, s, seatingOfTake.length - 1, repeat);
     }),
   );
   const set = plannedSet(takes, frequencies);
@@ -66,15 +66,11 @@ export function responsesInOrder({ design, model }: Pick<PlannedBench, 'design' 
   return [...model.responses.keys()].sort((a, b) => at(a) - at(b) || a - b);
 }
 
-/** A take as a file would tell it. @param index counted from 0. */
-export function takeOf(
-  seating: PlannedSeating,
-  index: number,
-  emitterSeating: string,
-  receiverSeating: string,
-  repeat: number,
-): Take {
+/** A take as a file would tell it. @param s the seating's, @param index the take's place in the design. */
+function takeOf(seating: PlannedSeating, s: number, index: number, repeat: number): Take {
   const { emitter, receiver, emitterMount, receiverMount, path, session } = seating;
+  // No label of a bench looks like this, so that a seating of its own is never taken for another one.
+  const own = `seating ${s + 1} of the plan`;
   return {
     id: `T${String(index + 1).padStart(3, '0')}`,
     file: 'plan',
@@ -85,8 +81,8 @@ export function takeOf(
     session,
     emitterMount,
     receiverMount,
-    emitterSeating,
-    receiverSeating,
+    emitterSeating: seating.emitterSeating ?? own,
+    receiverSeating: seating.receiverSeating ?? own,
     repeat: String(repeat + 1),
     takenAt: '',
     distance: undefined,
@@ -95,7 +91,7 @@ export function takeOf(
 }
 
 /** Takes at some frequencies, every level 0 dB. */
-export function plannedSet(takes: readonly Take[], frequencies: readonly number[]): TakeSet {
+function plannedSet(takes: readonly Take[], frequencies: readonly number[]): TakeSet {
   return {
     takes,
     frequencies: Float64Array.from(frequencies),

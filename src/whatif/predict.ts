@@ -9,10 +9,9 @@ import { detectability } from '../numeric/detectability.ts';
 import type { AssumedBand } from './assumed-scatter.ts';
 import { type BenchCost, type BenchTimes, costOf } from './costs.ts';
 import type { Design } from './design.ts';
-import { knownScatter } from './known-scatter.ts';
 import { partnerTest } from './partner-effect.ts';
 import { type PlannedBench, plannedBench, responsesInOrder } from './planned-bench.ts';
-import { type PlannedCovariance, plannedCovariance, weightOfTake } from './planned-covariance.ts';
+import { type PlannedCovariance, plannedCovariance } from './planned-covariance.ts';
 
 /** What one unit will have. Standard uncertainties in dB; NaN where the design gives none. */
 export interface UnitPrediction {
@@ -129,7 +128,7 @@ async function predictBand(
     mean: rootMeanSquare(told),
     worst: told.length === 0 ? Number.NaN : Math.max(...told),
     differences: differencesOf(bench, covariance, separability),
-    takes: takePredictions(bench, scatter, covariance),
+    takes: takePredictions(bench, covariance),
     covariance,
   };
 }
@@ -152,7 +151,7 @@ function unitPredictions(
     const isOpen = status[link] === 'open';
     const own = isOpen ? Number.NaN : Math.max(0, covariance.covariance[link * n + link]!);
     const links = new Set(model.responses.filter((r) => r.unit === unit && r.mount === mount).map((r) => r.link));
-    const test = partnerTest(layout, covariance, scatter, links, {
+    const test = partnerTest(layout, covariance.scatter, scatter, links, {
       risk,
       power: DETECTION_POWER,
       effect: options.effect,
@@ -233,28 +232,13 @@ function differencesOf(
   };
 }
 
-/** A redundancy below this is rounding, as in a run. */
-const UNCHECKED = 1e-9;
-
-function takePredictions(
-  bench: PlannedBench,
-  scatter: AssumedBand,
-  { fittedVariance }: PlannedCovariance,
-): TakePrediction[] {
-  const { layout, set } = bench;
-  const { uncertainty } = shiftsOfTakes(layout, knownScatter(bench, scatter));
-  return set.takes.map((_, take) => {
-    const seat = layout.seatOf[take]!;
-    const chain = layout.chainOfSeat[seat]!;
-    const from = layout.seatStart[chain]!;
-    const counts = layout.groups[chain]!.seatings.map((takes) => takes.length);
-    const left = 1 - weightOfTake(counts, seat - from, scatter) * fittedVariance[chain]!;
-    return {
-      take,
-      redundancy: left < UNCHECKED ? 0 : left,
-      smallestShift: DETECTABILITY * uncertainty[take]!,
-    };
-  });
+function takePredictions({ layout, set }: PlannedBench, { scatter, redundancy }: PlannedCovariance): TakePrediction[] {
+  const { uncertainty } = shiftsOfTakes(layout, scatter);
+  return set.takes.map((_, take) => ({
+    take,
+    redundancy: redundancy[take]!,
+    smallestShift: DETECTABILITY * uncertainty[take]!,
+  }));
 }
 
 function rootMeanSquare(values: readonly number[]): number {

@@ -1,3 +1,4 @@
+import { shiftsOfTakes } from '../estimate/shifts-of-takes.ts';
 import { LINK_STATUS } from '../estimate/solution.ts';
 import { type Settled, settle } from '../findings/settle.ts';
 import { DEFAULT_RISK } from '../findings/thresholds.ts';
@@ -79,7 +80,7 @@ export async function rehearse(
   const bench = plannedBench(design, options.model, frequencies);
   const predicted = await predictedVariances(bench, bandOf);
   const tally = emptyTally(bench.model.responses.length);
-  const takes = checkableTakes(bench, await redundancies(bench, bandOf[0]!));
+  const takes = await checkableTakes(bench, bandOf[0]!);
   const factorOf = coverageFactors(options.coverage);
   const risk = options.risk ?? DEFAULT_RISK;
   let [planted, found, tied, falseAlarms] = [0, 0, 0, 0];
@@ -155,8 +156,13 @@ async function predictedVariances(bench: PlannedBench, bandOf: readonly AssumedB
   const { model } = bench;
   const n = model.linksPerFrequency;
   const sums = new Float64Array(model.responses.length);
+  const hasPriors = model.links.some(({ prior }) => prior !== undefined);
+  let covariance = new Float64Array(0);
   for (let f = 0; f < bandOf.length; f++) {
-    const { covariance } = await plannedCovariance(bench, bandOf[f]!, f);
+    // Frequencies of one band differ in certificates only.
+    if (f === 0 || hasPriors || bandOf[f] !== bandOf[f - 1]) {
+      covariance = Float64Array.from((await plannedCovariance(bench, bandOf[f]!, f)).covariance);
+    }
     model.responses.forEach(({ link }, r) => {
       sums[r] = sums[r]! + covariance[link * n + link]! / bandOf.length;
     });
@@ -164,21 +170,11 @@ async function predictedVariances(bench: PlannedBench, bandOf: readonly AssumedB
   return sums;
 }
 
-async function redundancies(bench: PlannedBench, band: AssumedBand): Promise<Float64Array> {
-  const { chainWeight, fittedVariance } = await plannedCovariance(bench, band, 0);
-  return chainWeight.map((weight, chain) => 1 - weight * fittedVariance[chain]!);
-}
-
-/** A redundancy below this is rounding. */
-const UNCHECKED = 1e-6;
-
 /** Takes that repeats, other seatings or other chains check. */
-function checkableTakes({ layout, set }: PlannedBench, left: Float64Array): number[] {
-  return [...set.takes.keys()].filter((take) => {
-    const chain = layout.chainOfSeat[layout.seatOf[take]!]!;
-    const { seatings } = layout.groups[chain]!;
-    return left[chain]! > UNCHECKED || seatings.length > 1 || seatings[0]!.length > 1;
-  });
+async function checkableTakes(bench: PlannedBench, band: AssumedBand): Promise<number[]> {
+  const { scatter } = await plannedCovariance(bench, band, 0);
+  const { uncertainty } = shiftsOfTakes(bench.layout, scatter);
+  return [...bench.set.takes.keys()].filter((take) => !Number.isNaN(uncertainty[take]!));
 }
 
 interface Tally {

@@ -1,6 +1,5 @@
-import { bySession } from './costs.ts';
+import { mountingsBefore } from './costs.ts';
 import type { PlannedSeating } from './design.ts';
-import { walker, walkPlan } from './mounting-walk.ts';
 
 /** One take of a run sheet. */
 export interface SheetTake {
@@ -18,51 +17,29 @@ export interface SheetTake {
 }
 
 /**
- * The takes of a run in the order of the seatings, with seating numbers counted for each unit as the bench is really
- * mounted, so that the sheet, filled in, tells the solver what was mounted anew.
- * @param from seating numbers that units have already.
+ * The takes of a run in the order of the seatings.
+ * @param seatings those to come, with seating numbers: see `asMounted`, which makes the sheet, filled in, tell the solver
+ * what was mounted anew.
  */
-export function runSheet(seatings: readonly PlannedSeating[], from: ReadonlyMap<string, number>): SheetTake[] {
-  const last = new Map(from);
+export function runSheet(seatings: readonly PlannedSeating[]): SheetTake[] {
+  const due = seatings.filter(({ kind }) => kind !== 'made');
+  const mounts = mountingsBefore(due);
   const takes: SheetTake[] = [];
-  for (const own of bySession(seatings.filter(({ kind }) => kind !== 'made'))) {
-    const numbers = { emitter: new Int32Array(own.length), receiver: new Int32Array(own.length) };
-    walker(walkPlan(own)).mountings([...own.keys()], numbers);
-    const before = new Map(last);
-    const label = (unit: string, number: number) => {
-      const seating = (before.get(unit) ?? 0) + number;
-      last.set(unit, Math.max(last.get(unit) ?? 0, seating));
-      return String(seating);
-    };
-    let onBench = new Map<string, string>();
-    own.forEach((seating, k) => {
-      const emitterSeating = label(seating.emitter, numbers.emitter[k]!);
-      const receiverSeating = label(seating.receiver, numbers.receiver[k]!);
-      const now = new Map([
-        [placeName(seating.emitter, seating.emitterMount), emitterSeating],
-        [placeName(seating.receiver, seating.receiverMount), receiverSeating],
-      ]);
-      const mounts = [...now].filter(([place, number]) => onBench.get(place) !== number).map(([place]) => place);
-      onBench = now;
-      for (let repeat = 1; repeat <= seating.repeats; repeat++) {
-        const number = takes.length + 1;
-        takes.push({
-          number,
-          seating,
-          emitterSeating,
-          receiverSeating,
-          repeat,
-          mounts: repeat === 1 ? mounts : [],
-          file: fileName(number, seating),
-        });
-      }
-    });
-  }
+  due.forEach((seating, k) => {
+    for (let repeat = 1; repeat <= seating.repeats; repeat++) {
+      const number = takes.length + 1;
+      takes.push({
+        number,
+        seating,
+        emitterSeating: seating.emitterSeating ?? '',
+        receiverSeating: seating.receiverSeating ?? '',
+        repeat,
+        mounts: repeat === 1 ? mounts[k]! : [],
+        file: fileName(number, seating),
+      });
+    }
+  });
   return takes;
-}
-
-function placeName(unit: string, mount: string): string {
-  return mount === '' ? unit : `${unit}@${mount}`;
 }
 
 /** `take-007-S1-S2.csv`: the number keeps names apart where units differ in signs that files cannot have. */

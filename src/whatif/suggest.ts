@@ -16,6 +16,8 @@ export interface SuggestOptions {
   /** Takes of each added seating. */
   readonly repeats: number;
   readonly seed: number;
+  /** The pairs to choose from; absent: all that are allowed. */
+  readonly among?: readonly PlannedSeating[] | undefined;
   /** Starts of an exchange; absent: as many as a few seconds allow. */
   readonly starts?: number | undefined;
   readonly model?: ModelOptions | undefined;
@@ -49,7 +51,9 @@ export interface Suggestion {
  */
 export function suggestTakes(design: Design, band: AssumedBand, options: SuggestOptions): Suggestion | undefined {
   const modelOptions = plannedOptions(design, options.model ?? DEFAULT_MODEL_OPTIONS);
-  const pairs = candidatePairs(design, modelOptions.model === 'directional', options.repeats);
+  const pairs =
+    options.among?.map((seating) => ({ seating, isNew: true })) ??
+    candidatePairs(design, modelOptions.model === 'directional', options.repeats);
   const fresh = pairs.filter(({ isNew }) => isNew).map(({ seating }) => seating);
   const hasAgain = options.again || fresh.length < options.add;
   const candidates = hasAgain ? pairs.map(({ seating }) => seating) : fresh;
@@ -123,7 +127,8 @@ export function candidatePairs(design: Design, isDirectional: boolean, repeats: 
       if (there === undefined) return [{ seating: fresh, isNew: true }];
       // A session that is over is not taken up again.
       const session = there.kind === 'made' ? '' : there.session;
-      return [{ seating: { ...there, session, repeats, kind: 'added' as const }, isNew: false }];
+      const anew = { emitterSeating: undefined, receiverSeating: undefined };
+      return [{ seating: { ...there, ...anew, session, repeats, kind: 'added' as const }, isNew: false }];
     }),
   );
 }

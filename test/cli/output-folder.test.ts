@@ -225,4 +225,17 @@ describe('openOutputFolder', () => {
     await expect(folder.write([FILES[0]!, broken])).rejects.toThrow(TypeError);
     expect(readdirSync(room)).toEqual([]);
   });
+
+  it('replaces a result with pictures, and refuses where anything else lies among them', async () => {
+    const path = join(room, 'result');
+    const picture = fileOf('figures/network.svg', '<svg/>');
+    await (await openOutputFolder(path, OPTIONS)).write([...FILES, picture]);
+    expect(readFileSync(join(path, 'figures/network.svg'), 'utf8')).toBe('<svg/>');
+    await (await openOutputFolder(path, OPTIONS)).write(FILES);
+    expect(existsSync(join(path, 'figures'))).toBe(false);
+    await (await openOutputFolder(path, OPTIONS)).write([...FILES, picture]);
+    writeFileSync(join(path, 'figures', 'mine.txt'), 'mine');
+    expect(await faultOf(openOutputFolder(path, OPTIONS))).toContain('a folder with other things in it (figures)');
+    expect(readFileSync(join(path, 'figures/mine.txt'), 'utf8')).toBe('mine');
+  });
 });

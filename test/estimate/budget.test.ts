@@ -30,8 +30,8 @@ const EFFECT: BudgetLine = {
 
 /** The promise of the budget: the squares of its parts sum to that of the whole, to 1e-9 of it. */
 const TOLERANCE = 1e-9;
-/** A response that a convention fixes has an uncertainty of 0 but for rounding: 1e-12 dB, squared. */
-const ROUNDING = 1e-24;
+/** A response that a convention fixes has a variance of 0 but for rounding: 16 digits of that of a reading, at most 4 dB². */
+const ROUNDING = 1e-14;
 
 function expectClosed(set: TakeSet, model: Model, solution: Solution, budget: readonly ResponseBudget[]): void {
   const { bands, bandOf } = thirdOctaves(set.frequencies);

@@ -1,48 +1,41 @@
 import { describe, expect, it } from 'vitest';
 import { failingBands } from '../../src/findings/failing-bands.ts';
-import type { HoldFinding } from '../../src/findings/holds.ts';
+import { settle } from '../../src/findings/settle.ts';
+import { buildModel } from '../../src/model/build-model.ts';
+import { DEFAULT_MODEL_OPTIONS } from '../../src/model/model-options.ts';
+import { logSpaced, simulatePairs } from '../simulation/pair-set.ts';
+import type { SimulationOptions } from '../simulation/simulation-options.ts';
 
-const TOLERANCE = 1;
-const unit = (verdict: HoldFinding['verdict'], partner: number, from = 891): HoldFinding => ({
-  unit: 'any',
-  mount: '',
-  from,
-  to: 1.26 * from,
-  partner,
-  low: 0,
-  high: 9,
-  pValue: Number.NaN,
-  verdict,
-});
-const times = (count: number, finding: HoldFinding) => Array.from({ length: count }, () => finding);
+const OPTIONS = { tolerance: 1, coverage: 0.95 };
+/** Two third-octave bands. */
+const FREQUENCIES = logSpaced(8, 900, 1400);
+
+async function failing(more: Partial<SimulationOptions>, seed: number) {
+  const { set } = simulatePairs({ units: 9, frequencies: FREQUENCIES, repeatScatter: 0.1, ...more, seed });
+  const model = buildModel(set, { ...DEFAULT_MODEL_OPTIONS, model: 'reciprocal' });
+  const { screening } = await settle(set, model, { risk: 0.05 });
+  return failingBands(screening.levels, OPTIONS);
+}
 
 describe('the additive model fails in a band', () => {
-  it('where most units exceed the tolerance, and too many surely so to be chance', () => {
-    const holds = [
-      ...times(4, unit('not testable', 3)),
-      ...times(2, unit('broken', 4)),
-      ...times(4, unit('holds', 0.2)),
-    ];
-    expect(failingBands(holds, TOLERANCE)).toEqual([
-      { from: 891, to: 1.26 * 891, units: 10, aboveTolerance: 6, broken: 2 },
-    ]);
+  it('where chains depend on their pair by far more than the tolerance, even with each pair taken once', async () => {
+    for (let seed = 1; seed <= 10; seed++) {
+      const bands = await failing({ partnerScatter: 6, correlation: 0 }, seed);
+      expect(bands.length).toBeGreaterThanOrEqual(1);
+      // Half of 6 dB squared for each end; a bound that is a bound.
+      for (const { typical, low } of bands) {
+        expect(typical).toBeGreaterThan(2);
+        expect(low).toBeLessThan(typical);
+      }
+    }
   });
 
-  it('but not where it is a single unit that depends on its partners', () => {
-    expect(failingBands([unit('broken', 5), ...times(9, unit('holds', 0.2))], TOLERANCE)).toEqual([]);
-    expect(failingBands([unit('broken', 5), ...times(9, unit('not testable', 1.2))], TOLERANCE)).toEqual([]);
+  it('but not where the scatter is within the tolerance', async () => {
+    for (let seed = 1; seed <= 10; seed++) expect(await failing({ partnerScatter: 1.2 }, seed)).toEqual([]);
   });
 
-  it('nor where half of the units are within the tolerance, or have no figure', () => {
-    const broken = times(5, unit('broken', 4));
-    expect(failingBands([...broken, ...times(5, unit('holds', 0.2))], TOLERANCE)).toEqual([]);
-    expect(failingBands([...broken, ...times(5, unit('not testable', Number.NaN))], TOLERANCE)).toEqual([]);
-  });
-
-  it('band by band, ascending', () => {
-    const holds = [2000, 1000, 500].flatMap((from) =>
-      times(4, unit(from === 1000 ? 'holds' : 'broken', from === 1000 ? 0.1 : 3, from)),
-    );
-    expect(failingBands(holds, TOLERANCE).map(({ from }) => from)).toEqual([500, 2000]);
+  it('nor where it is a single unit that depends on its partners', async () => {
+    const fault = { kind: 'shifting resonance', unit: 4, from: 900, to: 1800, percent: 12 } as const;
+    for (let seed = 1; seed <= 10; seed++) expect(await failing({ faults: [fault] }, seed)).toEqual([]);
   });
 });

@@ -36,7 +36,10 @@ const EXAMPLES = COMMANDS.filter((line) => line.startsWith('oddloop '));
 
 /** Files and their columns as the README's table of outputs has them; no columns for what is no table. */
 const OUTPUTS = new Map(
-  [...README.matchAll(/^\| `([\w.]+\.(?:csv|json))` +\|[^|]*\| (.*?) *\|$/gm)].map((match) => [match[1]!, match[2]!]),
+  [...README.matchAll(/^\| `([\w.]+\.(?:csv|json|html)|figures)\/?` +\|[^|]*\| (.*?) *\|$/gm)].map((match) => [
+    match[1]!,
+    match[2]!,
+  ]),
 );
 
 let folder = '';

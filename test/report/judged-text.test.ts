@@ -184,7 +184,11 @@ describe('the terminal summary of mounting', () => {
       high: verdict === 'broken' ? 3.2 : 0.6,
     }));
   const holding = ['B', 'C', 'D'].flatMap((name) => unit(name, ['holds', 'holds', 'holds']));
-  const judged = async (holds: readonly HoldFinding[]) => said(await judgedResult(SHIFTED, [], { holds }));
+  /** @param failing indices of the thirds in which the model itself fails. */
+  const judged = async (holds: readonly HoldFinding[], failing: readonly number[] = []) => {
+    const bands = failing.map((b) => ({ from: THIRDS[b]![0], to: THIRDS[b]![1], typical: 2.5, low: 2 }));
+    return said(await judgedResult(SHIFTED, [], { holds, failing: bands }));
+  };
 
   test('is good where every unit holds in every band', async () => {
     const text = await judged([...unit('A', ['holds', 'holds', 'holds']), ...holding]);
@@ -216,15 +220,21 @@ describe('the terminal summary of mounting', () => {
   });
 
   test('a model that fails in every band is said first, without a list of every unit', async () => {
-    const text = await judged(['A', 'B', 'C', 'D'].flatMap((name) => unit(name, ['broken', 'broken', 'broken'])));
-    expect(text).toMatch(/31\.5 kHz\. THE ADDITIVE MODEL FAILS in every band \(890 Hz–1\.8 kHz\): most units/);
+    const text = await judged(
+      ['A', 'B', 'C', 'D'].flatMap((name) => unit(name, ['broken', 'broken', 'broken'])),
+      [0, 1, 2],
+    );
+    expect(text).toMatch(/31\.5 kHz\. THE ADDITIVE MODEL FAILS in every band \(890 Hz–1\.8 kHz\): a typical unit/);
     expect(text).toContain('No level below can be relied on');
     expect(text).not.toContain('Responses that depend');
     expect(text).not.toContain('Mounting independence');
   });
 
   test('a model that fails in one band is said to fail there', async () => {
-    const text = await judged(['A', 'B', 'C', 'D'].flatMap((name) => unit(name, ['holds', 'broken', 'holds'])));
+    const text = await judged(
+      ['A', 'B', 'C', 'D'].flatMap((name) => unit(name, ['holds', 'broken', 'holds'])),
+      [1],
+    );
     expect(text).toContain('THE ADDITIVE MODEL FAILS at 1.1–1.4 kHz:');
     expect(text).toContain('Mounting independence breaks in some bands for A, B, C and D.');
   });

@@ -59,7 +59,7 @@ describe('terminal summary', () => {
       'yonder none none · · 1',
       'Open at 1 kHz: yonder and beyond have no level, since no odd loop ties them. Known is the sum yonder + beyond. One take would settle it: yonder > A.',
       'half of the path',
-      'Written to out: responses.csv, takes.csv,',
+      'Written to out: report.html, responses.csv,',
       'Relative bench results are not an accredited calibration.',
     ];
     const places = inOrder.map((part) => text.indexOf(part));

@@ -1,17 +1,34 @@
 import { solve } from '../../src/estimate/solve.ts';
+import { settle } from '../../src/findings/settle.ts';
+import { DEFAULT_RISK } from '../../src/findings/thresholds.ts';
 import { buildModel } from '../../src/model/build-model.ts';
+import type { Model } from '../../src/model/model.ts';
 import { DEFAULT_MODEL_OPTIONS, type ModelOptions } from '../../src/model/model-options.ts';
 import { randomStream } from '../../src/numeric/random.ts';
 import { coverageFactors } from '../../src/numeric/student-t.ts';
+import type { TakeSet } from '../../src/takes/take-set.ts';
 import { logSpaced, type SimulatedSet, simulatePairs } from './pair-set.ts';
+import type { SimulationOptions } from './simulation-options.ts';
 
 /** A kind of bench whose expanded uncertainties are put to the test. */
 export interface CoverageCase {
   readonly title: string;
   readonly simulate: (seed: number) => SimulatedSet;
   readonly model: ModelOptions['model'];
+  /** What the intervals are to hold; the response itself, with takes solved by what readings say of themselves, where absent. */
+  readonly use?: Use;
   /** Sets that tell the coverage within the suite's few seconds. */
   readonly sets: number;
+}
+
+/**
+ * A use of a response, with the scatter that was simulated, in dB of a pair: the response itself, that of the unit in a
+ * fresh seating, or that on a fresh partner and in a fresh seating. Half of a pair's variance belongs to each unit.
+ */
+export interface Use {
+  readonly of: 'as seated' | 'seated again' | 'other partner';
+  readonly reseat: number;
+  readonly partner: number;
 }
 
 /** How often a response lay within its expanded uncertainty of the truth. */
@@ -38,6 +55,22 @@ const THIRD_OCTAVE = 10 ** 0.1;
 const ONE_A_BAND = Float64Array.from({ length: 60 }, (_, k) => 10 * THIRD_OCTAVE ** k);
 /** 20 frequencies in each of the 15 bands. */
 const MANY_A_BAND = logSpaced(300, 10_000, 320_000);
+
+const [RESEAT, PARTNER] = [0.4, 0.3];
+const USES = ['as seated', 'seated again', 'other partner'] as const;
+
+/** Benches with repeats, seatings and partners, by what they are mounted for, for each of the three uses. */
+function usesOf(title: string, options: Omit<SimulationOptions, 'seed'>, sets: number): CoverageCase[] {
+  const scatter = { repeatScatter: 0.1, reseatScatter: RESEAT, partnerScatter: PARTNER, correlation: 0, ...options };
+  const { reseatScatter: reseat, partnerScatter: partner } = scatter;
+  return USES.map((of) => ({
+    title: `${title}: ${of}`,
+    simulate: (seed) => simulatePairs({ seed, ...scatter }),
+    model: options.model ?? 'reciprocal',
+    use: { of, reseat, partner },
+    sets,
+  }));
+}
 
 /** Scatter is white throughout. Few degrees of freedom are in it, so that a coverage factor of 2 would not do. */
 export const COVERAGE_CASES: readonly CoverageCase[] = [
@@ -80,6 +113,17 @@ export const COVERAGE_CASES: readonly CoverageCase[] = [
     model: 'auto',
     sets: 150,
   },
+  ...usesOf('7 units, 3 seatings a pair', { units: 7, seatings: 3, repeats: 2, frequencies: MANY_A_BAND }, 10),
+  ...usesOf(
+    '7 units, each seated once a round of 4',
+    { units: 7, seatings: 4, repeats: 2, mounted: 'for each round', frequencies: MANY_A_BAND },
+    10,
+  ),
+  ...usesOf(
+    '7 units, 3 seatings a pair, one frequency a band',
+    { units: 7, seatings: 3, repeats: 2, frequencies: ONE_A_BAND },
+    20,
+  ),
 ];
 
 /** Solves `sets` simulated sets by the program's own steps and counts the intervals that hold the truth. */
@@ -90,17 +134,26 @@ export async function coverageOf(bench: CoverageCase, sets: number): Promise<Cov
   for (let seed = 1; seed <= sets; seed++) {
     const { set, truth } = bench.simulate(seed);
     const model = buildModel(set, { ...DEFAULT_MODEL_OPTIONS, model: bench.model });
-    const solution = await solve(set, model);
+    const { of = 'as seated', reseat = 0, partner = 0 } = bench.use ?? {};
+    const solution = bench.use === undefined ? await solve(set, model) : await settled(set, model);
+    const [uncertainty, dofOf] = {
+      'as seated': [solution.uncertainty, solution.dof] as const,
+      'seated again': [solution.reseatUncertainty, solution.reseatDof] as const,
+      'other partner': [solution.partnerUncertainty, solution.partnerDof] as const,
+    }[of];
+    const fresh = of === 'as seated' ? 0 : Math.hypot(reseat, of === 'other partner' ? partner : 0) / Math.SQRT2;
+    const stream = randomStream(seed, FRESH_STREAM);
     let held = 0;
     let counted = 0;
     for (const { link } of model.responses) {
       const own = truth.get(model.links[link]!.name)!;
       for (let f = 0; f < set.frequencies.length; f++) {
         const cell = f * model.linksPerFrequency + link;
-        const dof = solution.dof[cell]!;
-        const expanded = factorOf(dof) * solution.uncertainty[cell]!;
+        const dof = dofOf[cell]!;
+        const expanded = factorOf(dof) * uncertainty[cell]!;
+        const met = own[f]! + fresh * stream.normal();
         // An interval of NaN holds nothing: a response without an uncertainty is a miss.
-        if (Math.abs(solution.estimates[cell]! - own[f]!) <= expanded) held++;
+        if (Math.abs(solution.estimates[cell]! - met) <= expanded) held++;
         counted++;
         dofs.push(dof);
       }
@@ -118,6 +171,14 @@ export async function coverageOf(bench: CoverageCase, sets: number): Promise<Cov
     medianDof: dofs[dofs.length >> 1]!,
   };
 }
+
+/** By the program's own steps, screening and scatter included. */
+async function settled(set: TakeSet, model: Model) {
+  return (await settle(set, model, { risk: DEFAULT_RISK })).solution;
+}
+
+/** A stream that the simulation of sets does not use. */
+const FRESH_STREAM = 21;
 
 /** Standard uncertainties of single readings, in dB, evenly between these. */
 const OWN = { least: 0.05, most: 0.5 };

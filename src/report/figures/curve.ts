@@ -17,7 +17,7 @@ export function curvePath({ x, y }: Points): string {
   )
     .defined((k) => !Number.isNaN(y[k]!))
     .digits(DIGITS);
-  return path(x.keys()) ?? '';
+  return path(corners(y, y)) ?? '';
 }
 
 /**
@@ -39,7 +39,15 @@ export function ribbonPath(
   )
     .defined((k) => !Number.isNaN(lower.y[k]!) && !Number.isNaN(upper.y[k]!))
     .digits(DIGITS);
-  return path(lower.x.keys()) ?? '';
+  return path(corners(lower.y, upper.y)) ?? '';
+}
+
+/** Indices of the points without those in the middle of a level stretch, which the line passes through anyway. */
+function corners(a: Float64Array, b: Float64Array): number[] {
+  const isLevel = (values: Float64Array, k: number) => values[k - 1] === values[k] && values[k] === values[k + 1];
+  const kept: number[] = [];
+  for (let k = 0; k < a.length; k++) if (!isLevel(a, k) || !isLevel(b, k)) kept.push(k);
+  return kept;
 }
 
 /**

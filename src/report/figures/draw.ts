@@ -8,7 +8,10 @@ const FILE_WIDTH = 900;
 
 /** A picture within the page, named and described by elements with the ids `NAME-title` and `NAME-text`. */
 export function pageSvg({ name, drawing }: Figure): string {
-  const common = { role: 'img', 'aria-labelledby': `${name}-title`, 'aria-describedby': `${name}-text` };
+  // A picture with links in it is no single image: the links have to be reached.
+  const inside = drawing.kind === 'panels' ? '' : drawing.kind === 'plot' ? drawing.over : drawing.content;
+  const role = inside.includes('<a ') ? 'group' : 'img';
+  const common = { role, 'aria-labelledby': `${name}-title`, 'aria-describedby': `${name}-text` };
   switch (drawing.kind) {
     case 'sketch': {
       const { width, height, content } = drawing;

@@ -29,7 +29,7 @@ export interface FrequencyTick {
 /** Labels of a narrow picture stand at decades only where the axis is longer than this many decades. */
 const LONG_AXIS = 1.3;
 /** An axis shorter than this many decades has room for ticks between 1, 2 and 5. */
-const SHORT_AXIS = 0.35;
+const SHORT_AXIS = 0.7;
 
 /** Ticks at 1, 2 and 5; on an axis that holds fewer than two of these, at every round number in between. */
 export function frequencyTicks([from, to]: readonly [number, number]): FrequencyTick[] {

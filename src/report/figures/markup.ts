@@ -35,6 +35,6 @@ export function element(name: string, attributes: Attributes, content = ''): str
 }
 
 /** A number in a drawing: two decimals are a fiftieth of a pixel. */
-export function short(value: number): string {
+function short(value: number): string {
   return String(Number(value.toFixed(2)));
 }

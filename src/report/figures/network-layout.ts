@@ -28,6 +28,8 @@ export interface Network {
   readonly edges: readonly NetworkEdge[];
   /** Pairs of the same connected part without a take, as indices of nodes. */
   readonly missing: readonly (readonly [number, number])[];
+  /** Connected parts: 1 where everything hangs together. */
+  readonly parts: number;
   /** Whether an edge runs from emitter to receiver. */
   readonly isDirected: boolean;
   readonly width: number;
@@ -77,7 +79,7 @@ export function networkLayout(result: Result): Network {
         .map((b) => [a, b] as const),
     ),
   );
-  return { nodes, edges: [...edges.values()], missing, isDirected, width, height };
+  return { nodes, edges: [...edges.values()], missing, parts: parts.length, isDirected, width, height };
 }
 
 function connectedParts(count: number, edges: readonly { readonly from: number; readonly to: number }[]): number[][] {

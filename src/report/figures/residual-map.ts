@@ -22,7 +22,8 @@ export function residualMap(result: Result): Figure {
   const row = Math.max(ROW.least, Math.min(ROW.most, TALLEST / cells.rows.length));
   const height = Math.round(row * cells.rows.length);
   const range = frequencyRange(frequencies);
-  const steps = residualSteps(result.examination.whole.residualDeviation);
+  const shared = (takes.length * frequencies.length) / (cells.rows.length * cells.columns.length);
+  const steps = residualSteps(result.examination.whole.residualDeviation, shared);
   return {
     name: 'residuals',
     ...figureTexts.residuals(result, cells, steps),

@@ -5,9 +5,11 @@ export type ResidualSteps = readonly [number, number, number, number];
  * Steps of 1, 2, 5 and 10 times the 1-2-5 number next to what the fit leaves unexplained, so that most of a sound set stays
  * blank and a faulty take does not.
  * @param deviation in dB; NaN where nothing is spare.
+ * @param readings that share a cell: the largest of n stands about √(2 ln n) deviations off (Fisher & Tippett 1928, from memory).
  */
-export function residualSteps(deviation: number): ResidualSteps {
-  const base = deviation > 0 && Number.isFinite(deviation) ? oneTwoFive(deviation) : 1;
+export function residualSteps(deviation: number, readings = 1): ResidualSteps {
+  const size = deviation * Math.max(1, Math.sqrt(2 * Math.log(readings)));
+  const base = size > 0 && Number.isFinite(size) ? oneTwoFive(size) : 1;
   // Decimal fractions of small multiples, free of the last bits of the product.
   return [1, 2, 5, 10].map((factor) => Number((factor * base).toPrecision(6))) as [number, number, number, number];
 }

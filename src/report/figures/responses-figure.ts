@@ -2,6 +2,7 @@ import type { Role } from '../../model/model.ts';
 import { figureTexts } from '../figure-wording.ts';
 import { joinedBands } from '../held-bands.ts';
 import { frequencyCell } from '../number-text.ts';
+import { placedUnit } from '../response-name.ts';
 import type { Result } from '../result.ts';
 import { curvePath, ribbonPath, thinned } from './curve.ts';
 import { type EndLabel, endLabels, LABEL_DISTANCE } from './end-labels.ts';
@@ -41,15 +42,17 @@ function responsesFigure(
   const scale = frequencyScale(range);
   const x = Float64Array.from(frequencies, (frequency) => INNER_WIDTH * scale(frequency));
   const axis = levelAxis(drawnLevels(curves), { height, title: 'Level, dB' });
+  const name = isOneOfSeveral ? `responses-${role}` : 'responses';
   const hasRibbons = curves.length <= MOST_RIBBONS;
   const content = curves.map((curve) => {
-    const hatches = curve.dependent.map((band) => hatched(curve, band, { frequencies, x, y: axis.y }));
+    const hatches = curve.dependent.map((band) =>
+      hatched(curve, band, { frequencies, x, y: axis.y, pattern: `hatch-${name}` }),
+    );
     const ribbon = hasRibbons ? ribbonOf(curve, x, axis.y) : '';
     const path = curvePath(thinned({ x, y: curve.level.map(axis.y) }, INNER_WIDTH, INNER_WIDTH));
     const line = element('path', { d: path, class: `curve ${seriesClass(curve.place)}` });
     return element('g', { class: seriesOf(curve) }, ribbon + hatches.join('') + line);
   });
-  const name = isOneOfSeveral ? `responses-${role}` : 'responses';
   const texts = figureTexts.responses(result, curves, {
     role: isOneOfSeveral ? role : 'both',
     hasRibbons,
@@ -66,7 +69,7 @@ function responsesFigure(
       bottom: 30,
       height,
       inner: [INNER_WIDTH, height],
-      content: HATCH_PATTERN + content.join(''),
+      content: hatchPattern(name) + content.join(''),
       behind: axis.markup,
       over:
         curves.map((curve) => brokenMarks(curve, { frequencies, scale, y: axis.y })).join('') +
@@ -99,9 +102,13 @@ function responsesFigure(
   };
 }
 
-const HATCH_PATTERN =
-  '<defs><pattern id="hatch" width="6" height="6" patternUnits="userSpaceOnUse" patternTransform="rotate(45)">' +
-  '<path d="M0 3h6" class="hatch"/></pattern></defs>';
+/** A name of its own, since a page may hold several such pictures. */
+function hatchPattern(name: string): string {
+  return (
+    `<defs><pattern id="hatch-${name}" width="6" height="6" patternUnits="userSpaceOnUse" patternTransform="rotate(45)">` +
+    '<path d="M0 3h6" class="hatch"/></pattern></defs>'
+  );
+}
 
 function seriesOf({ place }: ResponseCurve): string {
   return `series-${place}`;
@@ -130,9 +137,14 @@ interface Place {
   readonly frequencies: Float64Array;
   readonly x: Float64Array;
   readonly y: (value: number) => number;
+  readonly pattern: string;
 }
 
-function hatched(curve: ResponseCurve, band: ResponseCurve['dependent'][number], { frequencies, x, y }: Place): string {
+function hatched(
+  curve: ResponseCurve,
+  band: ResponseCurve['dependent'][number],
+  { frequencies, x, y, pattern }: Place,
+): string {
   if (band.verdict !== 'broken') return '';
   const edge = (sign: 1 | -1) =>
     Float64Array.from(frequencies, (frequency, f) => {
@@ -141,7 +153,7 @@ function hatched(curve: ResponseCurve, band: ResponseCurve['dependent'][number],
       const half = Math.abs(y(curve.level[f]! + curve.expanded[f]!) - middle);
       return middle - sign * Math.max(HATCH, Number.isNaN(half) ? 0 : half);
     });
-  return element('path', { d: ribbonPath(x, edge(-1), edge(1), THINNING), fill: 'url(#hatch)', stroke: 'none' });
+  return element('path', { d: ribbonPath(x, edge(-1), edge(1), THINNING), fill: `url(#${pattern})`, stroke: 'none' });
 }
 
 /** The unit's name over the bands in which it is broken. */
@@ -155,7 +167,7 @@ function brokenMarks(
 ): string {
   const marks = joinedBands(curve.dependent.filter(({ verdict }) => verdict === 'broken')).map(({ from, to }) => {
     const levels = curve.level.filter((_, f) => frequencies[f]! >= from && frequencies[f]! < to);
-    const top = y(levels.reduce((most, level) => (level > most ? level : most), Number.NEGATIVE_INFINITY));
+    const top = y(Math.max(...levels));
     if (!Number.isFinite(top)) return '';
     const part = scale(Math.sqrt(from * to));
     const text = escaped(`${shortName(curve.name, 12)} broken`);
@@ -168,6 +180,7 @@ function labelsOf(curves: readonly ResponseCurve[], y: (value: number) => number
   return curves.flatMap((curve) => {
     const last = curve.level.findLast((value) => !Number.isNaN(value));
     if (last === undefined) return [];
-    return [{ name: curve.name, y: y(last), class: seriesClass(curve.place), series: seriesOf(curve) }];
+    // The title tells the role.
+    return [{ name: placedUnit(curve.response), y: y(last), class: seriesClass(curve.place), series: seriesOf(curve) }];
   });
 }

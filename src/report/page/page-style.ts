@@ -69,7 +69,7 @@ figure{margin:1.6rem 0 2rem;max-width:100%}
 .tools label{display:flex;align-items:center;gap:.5rem;color:var(--faint)}.tools input{accent-color:var(--accent);width:11rem;max-width:45vw}
 .tools output{min-height:1.5em;font-variant-numeric:tabular-nums}
 .value{font-variant-numeric:tabular-nums;color:var(--faint);white-space:nowrap}
-.readout .legend{display:grid;grid-template-columns:repeat(auto-fill,minmax(min(100%,15rem),1fr))}
+.readout .legend{display:grid;grid-template-columns:repeat(auto-fill,minmax(min(100%,13.5rem),1fr))}
 .hidden-series{display:none}.dim{opacity:.15}
 .cursor{stroke:var(--accent);stroke-width:1;pointer-events:none}
 .numbers{margin-top:.5rem;font-size:.875rem}summary{cursor:pointer;color:var(--accent);width:max-content;max-width:100%}

@@ -1,11 +1,7 @@
 import { figureText } from '../figures/numbers.ts';
 import { residualCells } from '../figures/residual-cells.ts';
+import { rememberingLast } from '../number-text.ts';
 import type { Result } from '../result.ts';
-
-/** Whether the map's readout has anything to add to its table. */
-export function hasResidualData({ set }: Result): boolean {
-  return set.takes.length > 0;
-}
 
 /**
  * What the map's readout needs beside its table: the standard uncertainty of each cell's reading, and its take and frequency
@@ -14,6 +10,7 @@ export function hasResidualData({ set }: Result): boolean {
 export function residualData(result: Result): string {
   const { rows, columns, uncertainty, take, frequency } = residualCells(result);
   const { takes, frequencies } = result.set;
+  const uncertaintyText = rememberingLast(figureText);
   const lines = (text: (cell: number) => string) =>
     rows.map((_, r) => {
       let last = '';
@@ -27,7 +24,7 @@ export function residualData(result: Result): string {
     });
   const isGrouped = { rows: rows.length < takes.length, columns: columns.length < frequencies.length };
   const data = {
-    u: lines((cell) => figureText(uncertainty[cell]!) || '-'),
+    u: lines((cell) => uncertaintyText(uncertainty[cell]!) || '-'),
     ...(isGrouped.rows ? { take: lines((cell) => takes[take[cell]!]?.id ?? '-') } : {}),
     ...(isGrouped.columns ? { frequency: lines((cell) => String(frequencies[frequency[cell]!] ?? '-')) } : {}),
   };

@@ -1,6 +1,9 @@
+import { changeSentences, levelSentences, reciprocitySentences } from '../agreement-wording.ts';
+import { budgetSentence } from '../budget-json.ts';
 import type { Figures } from '../figures/figures.ts';
 import { element, escaped } from '../figures/markup.ts';
 import { dependenceSentences } from '../hold-wording.ts';
+import { monteCarloSentence } from '../monte-carlo-json.ts';
 import { nextSteps } from '../next-wording.ts';
 import { openSentence } from '../open-wording.ts';
 import type { Result } from '../result.ts';
@@ -11,7 +14,7 @@ import { figureBlock, list, type Pieces, paragraph, statements } from './blocks.
 import { flaggedBlocks } from './flagged-blocks.ts';
 import { loopsTableBlock } from './loops-block.ts';
 import { fileList, settingsList } from './origin.ts';
-import { hasResidualData, residualData } from './residual-data.ts';
+import { residualData } from './residual-data.ts';
 import { sourceList } from './sources.ts';
 import { unitTable } from './unit-table.ts';
 
@@ -71,7 +74,10 @@ export function sections(result: Result, figures: Figures): Section[] {
       id: 'disagreement',
       title: 'Disagreement',
       question: 'Which take, where?',
-      body: () => figureBlock(figures.residuals, hasResidualData(result) ? residualData(result) : ''),
+      body: function* () {
+        yield list([...changeSentences(result), ...levelSentences(result), ...reciprocitySentences(result)]);
+        yield* figureBlock(figures.residuals, residualData(result));
+      },
     },
     {
       id: 'flagged',
@@ -93,6 +99,8 @@ export function sections(result: Result, figures: Figures): Section[] {
       title: 'Uncertainty',
       question: 'What should I improve?',
       body: function* () {
+        const sentences = [budgetSentence(result), monteCarloSentence(result.monteCarlo)];
+        yield* sentences.filter((sentence) => sentence !== '').map((sentence) => paragraph(sentence));
         if (figures.budget !== undefined) yield* figureBlock(figures.budget);
         if (figures.uncertainty === undefined) yield paragraph('No uncertainty can be given.');
         else yield* figureBlock(figures.uncertainty);

@@ -22,21 +22,23 @@ export function unitTable({ examination, model, coverage }: Result): string {
       escaped(responseName(response)),
       level.replace('-', '\u2212'),
       expanded(unit.medianExpanded),
-      expanded(unit.medianReseatExpanded),
-      expanded(unit.medianPartnerExpanded),
+      expanded(unit.medianUncertainty),
+      expanded(unit.medianReseatUncertainty),
+      expanded(unit.medianPartnerUncertainty),
       ...(hasCounts ? [ok, datum, open].map(String) : []),
       `${escaped(holdsCell(hold))}${isBroken ? ' <b>(broken in part)</b>' : ''}`,
     ];
   });
   const number = (name: string) => ({ name, isNumber: true });
   return table(
-    `Typical values over frequency. U: expanded uncertainty (${percentText(coverage)}) as seated here, for the unit seated again, and for it on another partner.`,
+    `Typical values over frequency. U: expanded uncertainty (${percentText(coverage)}) as seated here; u: standard uncertainty for three uses.`,
     [
       { name: 'Unit' },
       number('Level, dB'),
       number('U, dB'),
-      number('U seated again, dB'),
-      number('U other partner, dB'),
+      number('u seated, dB'),
+      number('u seated again, dB'),
+      number('u other partner, dB'),
       ...(hasCounts ? [number('ok'), number('datum'), number('open')] : []),
       { name: 'Holds' },
     ],

@@ -149,10 +149,11 @@ function draw(plot: SVGSVGElement, { from, to }: View): void {
   inner.setAttribute('viewBox', `${from * width} 0 ${(to - from) * width} ${height}`);
   const at = (part: number) => low * (high / low) ** part;
   axis.innerHTML = frequencyAxis([at(from), at(to)], Number(inner.getAttribute('height')));
+  // Names at the right end belong to levels that are no longer in sight.
+  plot.querySelector('.end-labels')?.classList.toggle('hidden-series', to < 1 - 1e-9);
   for (const mark of plot.querySelectorAll<SVGElement>('[data-at]')) {
     const part = (Number(mark.dataset.at) - from) / (to - from);
     mark.setAttribute('x', `${100 * part}%`);
-    mark.toggleAttribute('hidden', part < 0 || part > 1);
     mark.style.display = part < 0 || part > 1 ? 'none' : '';
   }
 }
