@@ -13,6 +13,7 @@ import { figuresOf } from '../whatif/compare.ts';
 import { costOf } from '../whatif/costs.ts';
 import type { Design } from '../whatif/design.ts';
 import { type OrderedSeatings, orderSeatings } from '../whatif/order.ts';
+import { plannedOptions } from '../whatif/planned-bench.ts';
 import { type Prediction, predict } from '../whatif/predict.ts';
 import { type Reach, reachOf } from '../whatif/reach.ts';
 import { rehearse } from '../whatif/rehearse.ts';
@@ -60,8 +61,10 @@ export async function whatifCommand(request: WhatifRequest): Promise<number> {
 }
 
 async function plan(request: WhatifRequest, inputs: WhatifInputs, progress: Progress): Promise<WhatifResult> {
-  const { bands, model } = inputs;
+  const { bands } = inputs;
   const { times, effect, risk } = request;
+  // What is added must not change what the design is meant for.
+  const model = inputs.designs.length === 1 ? plannedOptions(inputs.designs[0]!, inputs.model) : inputs.model;
   const foresee = (design: Design) => predict(design, bands, { model, times, effect, risk });
   const notices = [...inputs.notices];
   const given = inputs.designs.filter(({ seatings }) => seatings.length > 0);
@@ -69,7 +72,7 @@ async function plan(request: WhatifRequest, inputs: WhatifInputs, progress: Prog
   for (const design of given) predictions.push(await foresee(design));
   // The band with the largest uncertainty counts where one has to: all gain most where it is worst.
   const band = bands[predictions.at(-1)?.worstBand ?? 0]!;
-  const suggested = suggestedTakes(request, inputs, band, progress, notices);
+  const suggested = suggestedTakes(request, { ...inputs, model }, band, progress, notices);
   const isOrdered =
     suggested !== undefined || request.order || request.sheet !== undefined || request.control !== undefined;
   let design = suggested?.suggestion.design ?? inputs.designs.at(-1)!;
@@ -107,6 +110,7 @@ async function plan(request: WhatifRequest, inputs: WhatifInputs, progress: Prog
           csv: request.sheet,
           page: request.sheet.replace(/\.csv$/i, '.html'),
           takes: runSheet(design.seatings),
+          model: request.model === 'auto' ? undefined : request.model,
           frequencies: request.frequencies,
         };
   if (sheet?.takes.length === 0) throw nothingToCome(request.sheet!);

@@ -35,17 +35,20 @@ export interface ResponseBudget {
 }
 
 /**
- * The uncertainty of every response per third-octave band, split by source. Frequencies at which it has none are left out.
- * Cost: readings × responses.
+ * The uncertainty of every response per third-octave band, split by source. Frequencies at which it has none are left out;
+ * of many in a band some are taken, evenly spread: sources change slowly along a band.
+ * Cost: takes × responses × frequencies taken.
  */
 export function uncertaintyBudget(set: TakeSet, model: Model, solution: Solution): ResponseBudget[] {
   const { bands, bandOf } = thirdOctaves(set.frequencies);
   const sums = model.responses.map(() => bands.map(() => ({ count: 0, total: 0, sources: new Map<string, Source>() })));
+  const isTaken = takenFrequencies(bandOf, bands.length);
   const partsOf = readingParts(set, model, solution);
   const n = model.linksPerFrequency;
   for (const block of solution.covariance) {
     const partsAt = partsOf(block);
     block.frequencies.forEach((f, k) => {
+      if (!isTaken[f]) return;
       const scale = block.scales[k]!;
       model.responses.forEach(({ link }, response) => {
         const uncertainty = solution.uncertainty[f * n + link]!;
@@ -78,6 +81,22 @@ export function uncertaintyBudget(set: TakeSet, model: Model, solution: Solution
       return [{ response, from, to, uncertainty: Math.sqrt(total / count), parts }];
     }),
   );
+}
+
+/** Frequencies of a band beyond which they are thinned out. */
+const MOST_OF_A_BAND = 12;
+
+function takenFrequencies(bandOf: Int32Array, bands: number): boolean[] {
+  const members = Array.from({ length: bands }, (): number[] => []);
+  bandOf.forEach((band, f) => {
+    members[band]!.push(f);
+  });
+  const isTaken = new Array<boolean>(bandOf.length).fill(false);
+  for (const own of members) {
+    const count = Math.min(own.length, MOST_OF_A_BAND);
+    for (let k = 0; k < count; k++) isTaken[own[Math.floor(((k + 0.5) * own.length) / count)]!] = true;
+  }
+  return isTaken;
 }
 
 interface Source extends Part {

@@ -123,7 +123,7 @@ interface PerReading {
 }
 
 /** Variance of a seating beyond its readings, of the ends that are seated for it alone. */
-export function ownSeatVariance({ ownEnds }: SharedSeatings, { seating }: LevelScatter, seat: number): number {
+function ownSeatVariance({ ownEnds }: SharedSeatings, { seating }: LevelScatter, seat: number): number {
   return seating === undefined ? 0 : ownEnds[seat]!.reduce((sum, end) => sum + seating.shares[end]!, 0);
 }
 

@@ -65,7 +65,7 @@ export function compareResponses(result: SavedResult, first: number, second: num
 }
 
 /** Variance in dB² of the difference of two responses, never below 0. */
-export function differenceVariance(result: SavedResult, f: number, a: number, b: number): number {
+function differenceVariance(result: SavedResult, f: number, a: number, b: number): number {
   const sum = result.covariance(f, a, a) + result.covariance(f, b, b) - 2 * result.covariance(f, a, b);
   return Number.isNaN(sum) ? Number.NaN : Math.max(0, sum);
 }

@@ -23,6 +23,8 @@ export interface SheetPlan {
   readonly takes: readonly SheetTake[];
   /** Hertz; empty where each take names a file of its own. */
   readonly frequencies: readonly number[];
+  /** Absent where `solve` may choose by what it sees. */
+  readonly model: 'reciprocal' | 'directional' | undefined;
 }
 
 /** Everything that the outputs of `whatif` are made of. */

@@ -46,9 +46,14 @@ export function sheetFile({ csv, takes, frequencies }: SheetPlan): OutputFile {
   return csvFile(csv, columns, () => rows);
 }
 
+/** What is to be typed once the sheet is filled in. */
+export function solveLine({ csv, model }: Pick<SheetPlan, 'csv' | 'model'>): string {
+  return `oddloop solve ${csv} --out result${model === undefined ? '' : ` --model ${model}`}`;
+}
+
 /** The run sheet as a page to print and carry: a box to tick for every take, and what is to be mounted before it. */
-export function sheetPage({ page, csv, takes, frequencies }: SheetPlan, facts: readonly string[]): OutputFile {
-  return { name: page, chunks: () => [pageText(csv, takes, frequencies, facts)] };
+export function sheetPage(sheet: SheetPlan, facts: readonly string[]): OutputFile {
+  return { name: sheet.page, chunks: () => [pageText(sheet, facts)] };
 }
 
 const STYLE = `
@@ -65,12 +70,8 @@ tr.mounting td { border-top: 2px solid #000; }
 .small { font-size: .85rem; }
 @media print { body { margin: 0; max-width: none; } @page { size: A4; margin: 14mm; } }`;
 
-function pageText(
-  csv: string,
-  takes: readonly SheetTake[],
-  frequencies: readonly number[],
-  facts: readonly string[],
-): string {
+function pageText(sheet: SheetPlan, facts: readonly string[]): string {
+  const { csv, takes, frequencies } = sheet;
   const fill =
     frequencies.length > 0
       ? `Write the levels into ${csv}, at ${frequencies.map((frequency) => frequencyText(frequency, 4)).join(', ')}.`
@@ -88,7 +89,7 @@ function pageText(
 </head>
 <body>
 <h1>Run sheet: ${counted(takes.length, 'take')}</h1>
-<p>${[...facts, fill, `Then: oddloop solve ${csv} --out result`].map(escaped).join('<br>')}</p>
+<p>${[...facts, fill, `Then: ${solveLine(sheet)}`].map(escaped).join('<br>')}</p>
 <p>Date <span class="blank"></span> Name <span class="blank"></span> Bench <span class="blank"></span></p>
 <table>
 <thead><tr><th scope="col">done</th><th scope="col">no.</th>${isLong ? '<th scope="col">session</th>' : ''}<th scope="col">mount first</th><th scope="col">emitter</th><th scope="col">receiver</th><th scope="col">repeat</th>${frequencies.length === 0 ? '<th scope="col">save as</th>' : ''}<th scope="col">remark</th></tr></thead>

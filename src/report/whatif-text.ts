@@ -6,6 +6,7 @@ import type { TextStyle } from './result.ts';
 import { listed } from './terminal-summary.ts';
 import { type TableRow, TERMINAL_WIDTH, textTable, wrapped } from './text-layout.ts';
 import type { WhatifResult } from './whatif-result.ts';
+import { solveLine } from './whatif-sheet.ts';
 import {
   costText,
   designSentence,
@@ -286,6 +287,6 @@ function sheetLines({ sheet }: WhatifResult): string[] {
     frequencies.length > 0
       ? 'Fill in level_db'
       : 'Save each spectrum under the name that the sheet gives it, beside the sheet';
-  const text = `Run sheet of ${counted(takes.length, 'take')}: ${csv}, and ${page} to print. ${fill}; then: oddloop solve ${csv} --out result`;
+  const text = `Run sheet of ${counted(takes.length, 'take')}: ${csv}, and ${page} to print. ${fill}; then: ${solveLine(sheet)}`;
   return wrapped(text, { width: TERMINAL_WIDTH });
 }

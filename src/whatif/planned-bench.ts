@@ -21,13 +21,19 @@ export interface PlannedBench {
 /** What the frequency is called where a design knows none. Hertz. */
 const ANY_FREQUENCY = 1000;
 
-/** `auto` without data: reciprocal, unless no unit is used in both roles. */
+/**
+ * The model that a design is meant for where nobody says: reciprocal, unless its takes use every unit in one role only, as
+ * a bench of projectors and receivers does. Control takes say nothing of roles.
+ */
 export function plannedOptions(design: Design, options: ModelOptions = DEFAULT_MODEL_OPTIONS): ModelOptions {
   if (options.model !== 'auto') return options;
-  const emitters = new Set(design.seatings.map(({ emitter }) => emitter));
-  const both = design.seatings.some(({ receiver }) => emitters.has(receiver));
-  const directional = options.reversible.length > 0 || options.references.some(({ role }) => role !== 'both');
-  return { ...options, model: directional || (design.seatings.length > 0 && !both) ? 'directional' : 'reciprocal' };
+  const seatings = design.seatings.filter(({ kind }) => kind !== 'control');
+  const emitters = new Set(seatings.map(({ emitter }) => emitter));
+  const receivers = new Set(seatings.map(({ receiver }) => receiver));
+  const hasFreeUnit = design.units.some((unit) => !emitters.has(unit) && !receivers.has(unit));
+  const hasBoth = [...emitters].some((unit) => receivers.has(unit));
+  const isOfOneRole = options.reversible.length > 0 || options.references.some(({ role }) => role !== 'both');
+  return { ...options, model: isOfOneRole || !(hasBoth || hasFreeUnit) ? 'directional' : 'reciprocal' };
 }
 
 /**

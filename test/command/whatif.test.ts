@@ -186,6 +186,14 @@ describe('a run sheet', () => {
     expect(page).not.toContain('<b>');
   });
 
+  it('plans the reciprocal model with a control pair as well, whose roles say nothing of the other units', () => {
+    const { designs, order } = record(...six, '--control', 'N01>N02');
+    expect(designs[0].model).toBe('reciprocal');
+    expect(designs[0].bands[0].units).toHaveLength(6);
+    const kinds = order.seatings.map(({ kind }: { kind: string }) => kind === 'control');
+    expect([kinds[0], kinds.at(-1), kinds.filter(Boolean).length]).toEqual([true, true, 3]);
+  });
+
   it('is never written over one that may be filled in, and not half of the two files', () => {
     bench.write('afternoon.html', 'mine');
     const { status, stderr } = whatif(...six);
