@@ -3,7 +3,7 @@ import type { TakeSet } from '../takes/take-set.ts';
 import type { ExtraTake } from './examination.ts';
 
 /**
- * The take that would check a take which nothing checks, or break a tie: one end of it, that with fewer partners first,
+ * The take that would check a take which nothing checks: one end of it, that with fewer partners first,
  * against the unit tied to the most others that it was not yet paired with; where it was paired with all, the same pair
  * mounted again.
  */

@@ -11,6 +11,7 @@ import { checkingTake } from './checking-take.ts';
 import type {
   BandLevel,
   Examination,
+  ExtraTake,
   OpenFinding,
   PairFinding,
   TakeFinding,
@@ -106,7 +107,7 @@ function takeFinding(set: TakeSet, model: Model, settled: Settled, take: number,
     isLeftOut: leftOut.has(take),
     tiedWith,
     explained: settled.explained.find((explained) => explained.take === take),
-    cure: verdict === 'uncheckable' || verdict === 'tied' ? checkingTake(set, model, take) : undefined,
+    cure: cureOf(set, model, take, verdict),
   };
 }
 
@@ -158,6 +159,13 @@ function pairFindings(set: TakeSet, takes: readonly TakeFinding[]): PairFinding[
       verdict: worstVerdict(used),
     };
   });
+}
+
+/** A take that nothing checks needs another pair; a tied one shows what it is when its own pair is mounted again. */
+function cureOf(set: TakeSet, model: Model, take: number, verdict: TakeVerdict): ExtraTake | undefined {
+  const { emitter, receiver, path } = set.takes[take]!;
+  if (verdict === 'tied') return { emitter, receiver, path };
+  return verdict === 'uncheckable' ? checkingTake(set, model, take) : undefined;
 }
 
 const WORST_FIRST: readonly TakeVerdict[] = ['flagged', 'tied', 'uncheckable', 'not tested', 'agrees'];

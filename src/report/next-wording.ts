@@ -3,7 +3,7 @@ import { bandsWith, unitHolds } from './held-bands.ts';
 import { bandsText } from './hold-wording.ts';
 import { extraTakeText } from './open-wording.ts';
 import type { Result } from './result.ts';
-import { adviceText, cureText, flaggedTakes, takeName, tieGroups } from './take-wording.ts';
+import { adviceText, cureText, flaggedTakes, takeName, tieGroups, tieSteps } from './take-wording.ts';
 import { atFrequencies, counted, FEW_NAMES, listText } from './wording.ts';
 
 /** Something to do next, and what it buys. */
@@ -16,7 +16,7 @@ export interface NextStep {
 export function nextSteps(result: Result): NextStep[] {
   const all = [
     ...flaggedSteps(result),
-    ...tieSteps(result),
+    ...tieNext(result),
     ...openSteps(result),
     ...checkSteps(result),
     ...scatterSteps(result),
@@ -44,12 +44,14 @@ function flaggedSteps(result: Result): NextStep[] {
   });
 }
 
-function tieSteps({ set, examination }: Result): NextStep[] {
+function tieNext({ set, examination }: Result): NextStep[] {
   return tieGroups(examination).map((group) => {
     const names = listText(group.map(({ take }) => takeName(set.takes[take]!)));
-    const cured = group.find(({ cure }) => cure !== undefined);
-    const what = cured === undefined ? `Take ${names} again` : `Take ${cureText(cured.cure!, set.takes[cured.take]!)}`;
-    return { what, why: `It tells which of ${names} is at fault.` };
+    const { emitter, receiver } = set.takes[group[0]!.take]!;
+    return {
+      what: `Take ${emitter} > ${receiver} again, mounted anew`,
+      why: `${names} are tied. ${tieSteps({ set }, group)}`,
+    };
   });
 }
 

@@ -46,7 +46,7 @@ function cureSentence({ kind, extraTakes }: OpenFinding): string {
     'not measured': 'A take of it at these frequencies would settle it.',
     'one constant': 'A reference (--refs) or a reversible unit (--reversible) would settle it.',
     path: 'A known level of the path (--path FILE) would settle it.',
-    gain: 'The same pairs in a second session, or a known gain (gain_db), would settle it.',
+    gain: 'A known gain (gain_db) or a reference (--refs) would settle it.',
   };
   return tie + cures[kind];
 }

@@ -90,9 +90,8 @@ export function adviceText(result: Pick<Result, 'set'>, finding: TakeFinding): s
     return finding.cure === undefined ? '' : `Nothing checks this take; ${cureText(finding.cure, take)} would.`;
   }
   if (finding.verdict === 'tied') {
-    const ids = [finding.take, ...finding.tiedWith].sort((a, b) => a - b).map((t) => result.set.takes[t]!.id);
-    const settles = finding.cure === undefined ? 'Take them again' : `Take ${cureText(finding.cure, take)}`;
-    return `${settles}: that tells which of ${listText(ids)} is at fault.`;
+    const others = finding.tiedWith.map((t) => result.set.takes[t]!.id);
+    return `Take ${pairText(take)} again, mounted anew: if it comes out different, ${take.id} was at fault; if not, ${remainingText(others)}.`;
   }
   if (finding.verdict !== 'flagged') return '';
   const again = `take ${pairText(take)} again`;
@@ -139,6 +138,16 @@ export function cureText(cure: ExtraTake, { emitter, receiver, path }: Take): st
 
 function pairText({ emitter, receiver }: Take): string {
   return `${emitter} > ${receiver}`;
+}
+
+/** The takes that settle a tie, one after the other: each clears or convicts one of the tied takes. */
+export function tieSteps({ set }: Pick<Result, 'set'>, group: readonly TakeFinding[]): string {
+  const [first, ...rest] = group.map(({ take }) => set.takes[take]!);
+  return `Take ${pairText(first!)} again, mounted anew: if it comes out different, ${first!.id} was at fault; if not, ${remainingText(rest.map(({ id }) => id))}.`;
+}
+
+function remainingText(ids: readonly string[]): string {
+  return ids.length === 1 ? `it was ${ids[0]}` : `go on with ${listText(ids)}`;
 }
 
 /** `T130 (N06 > N09)`. */
@@ -189,8 +198,7 @@ export function tieSentence(result: Result, group: readonly TakeFinding[]): stri
     .map((finding) => ({ id: set.takes[finding.take]!.id, text: readsLike(finding, coverage) }))
     .filter(({ text }) => text !== '')
     .map(({ id, text }) => `${id} would read like ${text}.`);
-  const cure = group.find((finding) => finding.cure !== undefined);
-  const settles = cure === undefined ? '' : `One take would settle it: ${cureText(cure.cure!, set.takes[cure.take]!)}.`;
+  const settles = tieSteps(result, group);
   return [`Tied: the takes cannot tell which of ${listText(names)} is at fault; all stay in.`, ...readings, settles]
     .filter((sentence) => sentence !== '')
     .join(' ');

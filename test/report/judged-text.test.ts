@@ -127,7 +127,9 @@ describe('the terminal summary of takes', () => {
     expect(
       text.match(/Tied: the takes cannot tell which of T001 \(A > B\) and T003 \(A > D\) is at fault/g),
     ).toHaveLength(1);
-    expect(text).toContain('One take would settle it: A > E.');
+    expect(text).toContain(
+      'Take A > B again, mounted anew: if it comes out different, T001 was at fault; if not, it was T003.',
+    );
     expect(text).not.toContain('redo these');
   });
 
