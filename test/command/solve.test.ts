@@ -1,15 +1,21 @@
 import { spawnSync } from 'node:child_process';
 import { createHash } from 'node:crypto';
 import { existsSync, mkdirSync, readdirSync, readFileSync, writeFileSync } from 'node:fs';
-import { join } from 'node:path';
+import { join, relative } from 'node:path';
 import { describe, expect, it } from 'vitest';
 import { benchFolder, PROGRAM, pairsCsv, RING_WITH_DIAGONALS } from './bench-folder.ts';
 
 const bench = benchFolder();
 const RECIPROCAL = ['--model', 'reciprocal', '--out', 'result'];
 
+/** Every file under the folder, those of its own folders included. */
 const filesIn = (folder: string) =>
-  Object.fromEntries(readdirSync(folder).map((name) => [name, readFileSync(join(folder, name), 'utf8')]));
+  Object.fromEntries(
+    readdirSync(folder, { recursive: true, withFileTypes: true })
+      .filter((entry) => entry.isFile())
+      .map((entry) => join(entry.parentPath, entry.name))
+      .map((path) => [relative(folder, path), readFileSync(path, 'utf8')]),
+  );
 
 describe('oddloop solve', () => {
   it('ends with 0, the summary on stdout, nothing on stderr, and the files in the folder', () => {
@@ -196,7 +202,9 @@ describe('oddloop solve', () => {
     const { status, stderr } = bench.run('solve', 'ring.csv', ...RECIPROCAL);
     expect(status).toBe(4);
     expect(stderr).toMatch(/^Nothing can be told apart: /);
-    expect(readFileSync(bench.at('result/responses.csv'), 'utf8')).toMatch(/^N01,,both,1000,,,,,,,,open,not testable$/m);
+    expect(readFileSync(bench.at('result/responses.csv'), 'utf8')).toMatch(
+      /^N01,,both,1000,,,,,,,,open,not testable$/m,
+    );
   });
 
   it('ends with 3 and writes nothing where the input cannot be used', () => {
