@@ -1,6 +1,7 @@
 import { uncertaintyBudget } from '../estimate/budget.ts';
 import type { MonteCarlo } from '../estimate/monte-carlo.ts';
 import { examine } from '../findings/examine.ts';
+import { testLookalikes } from '../findings/lookalike-test.ts';
 import { type Settled, settle } from '../findings/settle.ts';
 import { buildModel } from '../model/build-model.ts';
 import type { Model } from '../model/model.ts';
@@ -55,13 +56,13 @@ export async function solveCommand(request: Request, folderName: string, run: So
     const model = buildModel(set, modelInputs.options);
     const effects = systematicEffects(set, modelInputs.budget);
     const onProgress = progress.step('solving');
-    const settled = await settle(set, model, {
-      givenUncertainty: settings.u ?? undefined,
-      risk: settings.risk,
-      effects,
-      onProgress,
+    const how = { givenUncertainty: settings.u ?? undefined, risk: settings.risk, effects, onProgress };
+    const settled = await settle(set, model, how);
+    const declared = await testLookalikes(set, modelInputs.options, model.choice.kind, {
+      ...how,
+      coverage: settings.coverage,
     });
-    const examination = examine(set, model, settled, settings);
+    const examination = examine(set, model, settled, { ...settings, declared });
     const checked = await checkedByDraws(settings, readings, set, model, settled, effects, progress);
     const result: Result = {
       version: installedPackage().version,

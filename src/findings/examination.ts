@@ -5,6 +5,7 @@ import type { ExplainedTake } from './explanations.ts';
 import type { FailingBand } from './failing-bands.ts';
 import type { HoldFinding } from './holds.ts';
 import type { LevelMisfit } from './level-misfit.ts';
+import type { LookalikeFinding } from './lookalike-test.ts';
 import type { LoopFindings } from './loops.ts';
 import type { MountDifference } from './mount-differences.ts';
 import type { ReciprocityFindings } from './reciprocity-bands.ts';
@@ -148,6 +149,8 @@ export interface Examination {
   readonly units: readonly UnitFinding[];
   readonly open: readonly OpenFinding[];
   readonly holds: readonly HoldFinding[];
+  /** Declared look-alikes held against each other; empty where none were declared. */
+  readonly lookalikes: readonly LookalikeFinding[];
   /** Bands in which the additive model itself fails. */
   readonly failing: readonly FailingBand[];
   /** Units whose level is another one from some take on, the surest first. */

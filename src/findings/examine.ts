@@ -22,6 +22,7 @@ import type {
 import { failingBands } from './failing-bands.ts';
 import { holdFindings } from './holds.ts';
 import { levelMisfit } from './level-misfit.ts';
+import type { LookalikeFinding } from './lookalike-test.ts';
 import { loopFindings } from './loops.ts';
 import { mountDifferences } from './mount-differences.ts';
 import { openFindings } from './open-findings.ts';
@@ -37,6 +38,8 @@ export interface ExamineOptions {
   readonly tolerance: number;
   /** Chance that a clean set gets any take flagged. */
   readonly risk: number;
+  /** What the test of declared look-alikes found (`testLookalikes`); none where absent. */
+  readonly declared?: readonly LookalikeFinding[];
 }
 
 /** Judges a settled solution: takes, pairs, units, the whole, and what is open. Cost: linear in the readings. */
@@ -50,6 +53,7 @@ export function examine(set: TakeSet, model: Model, settled: Settled, options: E
     pairs: pairFindings(set, takes),
     units: model.responses.map((_, response) => unitFinding(set, model, solution, response, factorOf)),
     open: [...openFindings(set, model, solution), ...gainFindings(model, solution)],
+    lookalikes: options.declared ?? [],
     failing: failingBands(screening.levels, options),
     changed: changedUnits(set, model, screening.levels, options.risk),
     holds: holdFindings(model, screening.levels, options),

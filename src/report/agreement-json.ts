@@ -4,7 +4,7 @@ import type { Result } from './result.ts';
 
 /** Tests of the set as a whole, as a record for JSON: lack of fit, chi-square, level, reciprocity, loops. */
 export function agreementRecord({ examination, set }: Result): Readonly<Record<string, unknown>> {
-  const { changed, levels, reciprocity, bands, loops } = examination;
+  const { changed, lookalikes, levels, reciprocity, bands, loops } = examination;
   const range = ({ from, to }: { readonly from: number; readonly to: number }) => ({
     from_hz: roundedFrequency(from),
     to_hz: roundedFrequency(to),
@@ -20,6 +20,16 @@ export function agreementRecord({ examination, set }: Result): Readonly<Record<s
       shift_db: jsonFigure(shift),
       u_db: jsonFigure(uncertainty),
       p_value: jsonFigure(pValue),
+    })),
+    lookalikes: lookalikes.map(({ one, other, mount, role, frequencies, beyond, difference, expanded, verdict }) => ({
+      units: [one, other],
+      mount: mount === '' ? null : mount,
+      role,
+      frequencies,
+      beyond,
+      difference_db: jsonFigure(difference),
+      expanded_db: jsonFigure(expanded),
+      verdict,
     })),
     lack_of_fit: {
       pure_error_from: bands.pureErrorFrom,

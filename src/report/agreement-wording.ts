@@ -53,6 +53,23 @@ export function changeSentences({ examination: { changed }, set, coverage }: Res
   });
 }
 
+/** Declared look-alikes that are not alike, or that nothing could test. */
+export function lookalikeSentences({ examination: { lookalikes } }: Result): string[] {
+  return lookalikes.flatMap(({ one, other, frequencies, beyond, difference, expanded, verdict }) => {
+    if (verdict === 'agree') return [];
+    if (verdict === 'not testable') {
+      return [
+        `Whether ${one} and ${other} are look-alikes cannot be tested: without the declaration the takes do not tell them apart.`,
+      ];
+    }
+    const sign = difference < 0 ? '−' : '+';
+    const size = `${sign}${roundedText(Math.abs(difference), expanded)} dB ± ${roundedText(expanded, expanded)} dB`;
+    return [
+      `${one} and ${other} were declared look-alikes and differ: at ${beyond} of ${frequencies} frequencies by more than U, typically ${size}. Leave the declaration out (--lookalikes).`,
+    ];
+  });
+}
+
 /** Bands in which emit and receive differ although the model holds them to be one; empty where there are none. */
 export function reciprocitySentences({ examination: { reciprocity } }: Result): string[] {
   if (!reciprocity.speaksAgainstModel) return [];

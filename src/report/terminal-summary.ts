@@ -1,6 +1,6 @@
 import type { UnitFinding } from '../findings/examination.ts';
 import { roundedText } from '../quantity/rounding.ts';
-import { changeSentences, levelSentences, reciprocitySentences } from './agreement-wording.ts';
+import { changeSentences, levelSentences, lookalikeSentences, reciprocitySentences } from './agreement-wording.ts';
 import { benchCounts } from './bench-counts.ts';
 import { budgetSentence } from './budget-json.ts';
 import { bandsWith, unitHolds } from './held-bands.ts';
@@ -176,8 +176,13 @@ function capped(sentences: readonly string[], name: string, file: string): strin
 
 function agreementLines(result: Result, style: TextStyle): string[] {
   return listed(
-    'What depends on time, level or direction',
-    [...changeSentences(result), ...levelSentences(result), ...reciprocitySentences(result)],
+    'What depends on time, level, direction or a declaration',
+    [
+      ...lookalikeSentences(result),
+      ...changeSentences(result),
+      ...levelSentences(result),
+      ...reciprocitySentences(result),
+    ],
     style,
   );
 }

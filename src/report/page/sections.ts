@@ -1,4 +1,4 @@
-import { changeSentences, levelSentences, reciprocitySentences } from '../agreement-wording.ts';
+import { changeSentences, levelSentences, lookalikeSentences, reciprocitySentences } from '../agreement-wording.ts';
 import { budgetSentence } from '../budget-json.ts';
 import type { Figures } from '../figures/figures.ts';
 import { element, escaped } from '../figures/markup.ts';
@@ -75,7 +75,12 @@ export function sections(result: Result, figures: Figures): Section[] {
       title: 'Disagreement',
       question: 'Which take, where?',
       body: function* () {
-        yield list([...changeSentences(result), ...levelSentences(result), ...reciprocitySentences(result)]);
+        yield list([
+          ...lookalikeSentences(result),
+          ...changeSentences(result),
+          ...levelSentences(result),
+          ...reciprocitySentences(result),
+        ]);
         yield* figureBlock(figures.residuals, residualData(result));
       },
     },
