@@ -144,7 +144,9 @@ function frequencyWeights(set: TakeSet, { residuals, redundancy }: Solution): Fl
   };
   for (let f = 0; f < width; f++) level[f] = meanBelow(f, 3 * meanBelow(f, Number.POSITIVE_INFINITY));
   const checked = Array.from(level).filter((value) => !Number.isNaN(value));
-  const floor = checked.length === 0 ? 0 : mean(checked) * 0.1;
+  // Where nothing is checked at all, every frequency stands for that alike.
+  if (checked.length === 0) return level.fill(1);
+  const floor = mean(checked) * 0.1;
   return level.map((value) => (Number.isNaN(value) ? 0 : floor > 0 ? 1 / Math.max(value, floor) ** 2 : 1));
 }
 
