@@ -1,5 +1,6 @@
 import { InputError } from '../quantity/input-fault.ts';
 import { jsonText } from '../report/json-text.ts';
+import { whatifPage } from '../report/page/whatif-page.ts';
 import { whatifRecord } from '../report/whatif-json.ts';
 import type { SuggestedTakes, WhatifResult } from '../report/whatif-result.ts';
 import { sheetFile, sheetPage } from '../report/whatif-sheet.ts';
@@ -51,7 +52,7 @@ export async function whatifCommand(request: WhatifRequest): Promise<number> {
       ];
       await writeNewFiles([sheetFile(sheet), sheetPage(sheet, facts)]);
     }
-    await folder?.write(whatifFiles(result), (name) => progress.step(`writing ${name}`));
+    await folder?.write([...whatifFiles(result), whatifPage(result)], (name) => progress.step(`writing ${name}`));
     progress.clear();
     await writeResult(answer(result, request));
     return ending(result.predictions);

@@ -1,5 +1,5 @@
 import { LADDER_STEPS } from '../whatif/assumed-scatter.ts';
-import { compareDesigns, type Figure } from '../whatif/compare.ts';
+import { compareDesigns } from '../whatif/compare.ts';
 import type { BandPrediction, Prediction } from '../whatif/predict.ts';
 import { openSentence } from './open-wording.ts';
 import type { TextStyle } from './result.ts';
@@ -8,14 +8,15 @@ import { type TableRow, TERMINAL_WIDTH, textTable, wrapped } from './text-layout
 import type { WhatifResult } from './whatif-result.ts';
 import { solveLine } from './whatif-sheet.ts';
 import {
+  COMPARED_NAMES,
+  comparedText,
   costText,
   designSentence,
   designVerdict,
   figureText,
-  freshSentence,
   meritValue,
-  minutesText,
   openAsTold,
+  orderSentence,
   scatterSentence,
   seatingText,
   stretchText,
@@ -51,7 +52,7 @@ export function whatifText(result: WhatifResult, style: TextStyle): string {
       : [unitTable(main, result, style), takeTable(main, style)]),
     bandTable(main, style),
     listed('Open, or resting on a datum', openPoints(main), style),
-    orderLines(result),
+    wrapped(orderSentence(result)),
     rehearsalLines(result, style),
     sheetLines(result),
     [...wrapped(scatterSentence(main.bands.map(({ scatter }) => scatter))), ...wrapped(timesSentence(result))],
@@ -68,21 +69,6 @@ function verdictLines(prediction: Prediction, style: TextStyle): string[] {
   );
 }
 
-const FIGURE_NAMES: Readonly<Record<Figure, string>> = {
-  open: 'responses without a level',
-  mean: 'u typical, dB',
-  worst: 'u of the worst unit, dB',
-  reseated: 'u reseated, dB',
-  partner: 'u on another partner, dB',
-  difference: 'u of differences, dB',
-  uncheckable: 'takes that nothing checks',
-  shift: 'smallest shift found, dB',
-  effect: 'smallest partner effect, dB',
-  takes: 'takes to come',
-  mountings: 'mountings of a unit',
-  minutes: 'time',
-};
-const COUNTS: ReadonlySet<Figure> = new Set(['open', 'uncheckable', 'takes', 'mountings']);
 /** Designs that stand beside each other in 80 columns. */
 const MOST_BESIDE = 5;
 
@@ -96,12 +82,8 @@ function comparison({ predictions }: WhatifResult, style: TextStyle): string[] {
   for (let from = 0; from < predictions.length; from += MOST_BESIDE) {
     const shown = letters.map((_, d) => d).slice(from, from + MOST_BESIDE);
     const rows = figures.map(({ figure, values, isBest }): TableRow => {
-      const cell = (d: number) => {
-        const value = values[d]!;
-        const text = COUNTS.has(figure) ? String(value) : figure === 'minutes' ? minutesText(value) : figureText(value);
-        return `${text} ${isBest[d] ? '*' : ' '}`;
-      };
-      return { cells: [FIGURE_NAMES[figure], ...shown.map(cell)] };
+      const cell = (d: number) => `${comparedText(figure, values[d]!)} ${isBest[d] ? '*' : ' '}`;
+      return { cells: [COMPARED_NAMES[figure], ...shown.map(cell)] };
     });
     tables.push(
       ...(from === 0 ? [] : ['']),
@@ -237,18 +219,6 @@ function openPoints(prediction: Prediction): string[] {
   return more > 0 ? [...points.slice(0, MOST_POINTS), `And ${counted(more, 'more')}.`] : points;
 }
 
-function orderLines({ ordered, predictions }: WhatifResult): string[] {
-  const { seatings } = predictions.at(-1)!.bench.design;
-  if (ordered === undefined) return wrapped(freshSentence(seatings));
-  const { mountings, given, isOptimal } = ordered;
-  const saved =
-    given > mountings ? `, ${given - mountings} fewer than in the order given` : ', as many as in the order given';
-  const best = isOptimal ? 'No order needs fewer.' : 'There may be an order with fewer.';
-  return wrapped(
-    `In order: ${counted(mountings, 'mounting')} of a unit${saved}, since a unit that is needed next stays mounted. ${best} Pairs that share a seating share its error: u counts that in; --fresh mounts both units anew for every pair.`,
-  );
-}
-
 function rehearsalLines({ rehearsal, coverage }: WhatifResult, style: TextStyle): string[] {
   if (rehearsal === undefined) return [];
   const { runs, frequencies, predicted, seen, stated, covered, chance, planted, found, tied, fault, falseAlarms } =
@@ -276,7 +246,7 @@ function rehearsalLines({ rehearsal, coverage }: WhatifResult, style: TextStyle)
   ];
 }
 
-function chanceText(chance: number): string {
+export function chanceText(chance: number): string {
   return Number.isNaN(chance) ? 'none' : `${(100 * chance).toFixed(chance > 0.995 || chance < 0.1 ? 1 : 0)} %`;
 }
 

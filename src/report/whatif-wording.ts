@@ -3,7 +3,7 @@ import type { OpenFinding } from '../findings/examination.ts';
 import { frequencyText } from '../quantity/frequency.ts';
 import { roundedText } from '../quantity/rounding.ts';
 import type { AssumedBand } from '../whatif/assumed-scatter.ts';
-import { figuresOf } from '../whatif/compare.ts';
+import { type Figure, figuresOf } from '../whatif/compare.ts';
 import type { BenchCost } from '../whatif/costs.ts';
 import type { Criterion, Merit } from '../whatif/criterion.ts';
 import type { PlannedSeating } from '../whatif/design.ts';
@@ -185,4 +185,38 @@ export function openAsTold({ open, bench: { set } }: Prediction): {
 /** `10 kHz to 20 kHz`; `all frequencies` where one figure serves all. */
 export function stretchText({ from, to }: AssumedBand): string {
   return Number.isNaN(from) ? 'all frequencies' : `${frequencyText(from, 3)} to ${frequencyText(to, 3)}`;
+}
+
+/** What the figures that designs are compared by are called. */
+export const COMPARED_NAMES: Readonly<Record<Figure, string>> = {
+  open: 'responses without a level',
+  mean: 'u typical, dB',
+  worst: 'u of the worst unit, dB',
+  reseated: 'u reseated, dB',
+  partner: 'u on another partner, dB',
+  difference: 'u of differences, dB',
+  uncheckable: 'takes that nothing checks',
+  shift: 'smallest shift found, dB',
+  effect: 'smallest partner effect, dB',
+  takes: 'takes to come',
+  mountings: 'mountings of a unit',
+  minutes: 'time',
+};
+const COUNTS: ReadonlySet<Figure> = new Set(['open', 'uncheckable', 'takes', 'mountings']);
+
+/** A compared figure with its digits. */
+export function comparedText(figure: Figure, value: number): string {
+  if (COUNTS.has(figure)) return String(value);
+  return figure === 'minutes' ? minutesText(value) : figureText(value);
+}
+
+/** How the takes are ordered; without an order, how the pairs are mounted. */
+export function orderSentence({ ordered, predictions }: Pick<WhatifResult, 'ordered' | 'predictions'>): string {
+  const { seatings } = predictions.at(-1)!.bench.design;
+  if (ordered === undefined) return freshSentence(seatings);
+  const { mountings, given, isOptimal } = ordered;
+  const saved =
+    given > mountings ? `, ${given - mountings} fewer than in the order given` : ', as many as in the order given';
+  const best = isOptimal ? 'No order needs fewer.' : 'There may be an order with fewer.';
+  return `In order: ${counted(mountings, 'mounting')} of a unit${saved}, since a unit that is needed next stays mounted. ${best} Pairs that share a seating share its error: u counts that in; --fresh mounts both units anew for every pair.`;
 }

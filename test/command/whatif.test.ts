@@ -80,6 +80,20 @@ describe('oddloop whatif', () => {
     expect(record('tables/design.csv').designs[0].forbidden).toEqual([['A', 'C']]);
   });
 
+  it('--out writes a page beside the tables, which says what the terminal says', () => {
+    const { status, stdout } = whatif('--units', '5', '--pattern', 'all', '--order', '--out', 'tables');
+    expect(status).toBe(0);
+    const page = readFileSync(bench.at('tables/report.html'), 'utf8');
+    const unwrapped = stdout.replace(/\s+/g, ' ');
+    const sentences = [...page.matchAll(/<li class="(?:good|warning|plain)">.*?<span>(.*?)<\/span>/g)].map(
+      ([, text = '']) => text,
+    );
+    expect(sentences).toHaveLength(3);
+    for (const sentence of sentences) expect(unwrapped).toContain(sentence);
+    expect(page).toContain('>Run sheet</h2>');
+    expect(page).not.toContain('<script');
+  });
+
   it('takes scatter by bands, and says where a step has no figure', () => {
     const { designs } = record('--units', '5', '--pattern', 'all', '--reseat-db', '1 kHz..2 kHz=0.2,2 kHz..4 kHz=0.6');
     expect(

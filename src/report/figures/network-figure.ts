@@ -14,6 +14,26 @@ const BEND = 0.08;
 /** Units on a ring, pairs as lines, those with a take that disagrees dashed and named. */
 export function networkFigure(result: Result): Figure {
   const network = networkLayout(result);
+  const { nodes, edges } = network;
+  return {
+    name: 'network',
+    ...figureTexts.network(result, network),
+    ...networkSketch(network, 'pair not taken'),
+    numbers: {
+      columns: [...(network.isDirected ? ['emitter', 'receiver'] : ['unit', 'unit']), 'takes', 'takes that disagree'],
+      rows: () =>
+        edges.map(({ from, to, takes, flagged: ids }) => [
+          nodes[from]!.name,
+          nodes[to]!.name,
+          String(takes),
+          ids.join(' '),
+        ]),
+    },
+  };
+}
+
+/** The drawing with its legend; `missingName` says what a dotted line is. */
+export function networkSketch(network: Network, missingName: string): Pick<Figure, 'drawing' | 'legend'> {
   const { nodes, edges, missing, width, height } = network;
   const most = Math.max(...edges.map(({ takes }) => takes));
   const faint = edges.length > 200 ? 0.35 : 0.75;
@@ -33,21 +53,10 @@ export function networkFigure(result: Result): Figure {
     flagged.map((edge) => edgeLine(network, edge, {}, 'flagged')).join('') +
     nodes.map(nodeMarkup).join('') +
     edgeLabels(network, flagged);
+  const isMissingShown = missing.length > 0 && missing.length <= MOST_MISSING;
   return {
-    name: 'network',
-    ...figureTexts.network(result, network),
     drawing: { kind: 'sketch', width: Math.round(width), height: Math.round(height), content },
-    numbers: {
-      columns: [...(network.isDirected ? ['emitter', 'receiver'] : ['unit', 'unit']), 'takes', 'takes that disagree'],
-      rows: () =>
-        edges.map(({ from, to, takes, flagged: ids }) => [
-          nodes[from]!.name,
-          nodes[to]!.name,
-          String(takes),
-          ids.join(' '),
-        ]),
-    },
-    legend: legendOf(network, missing.length > 0 && missing.length <= MOST_MISSING, flagged.length > 0),
+    legend: legendOf(network, isMissingShown ? missingName : undefined, flagged.length > 0),
   };
 }
 
@@ -125,7 +134,7 @@ function edgeLabels({ nodes, isDirected }: Network, edges: readonly NetworkEdge[
 
 const LABEL_HEIGHT = 18;
 
-function legendOf({ nodes }: Network, hasMissing: boolean, hasFlagged: boolean): LegendEntry[] {
+function legendOf({ nodes }: Network, missingName: string | undefined, hasFlagged: boolean): LegendEntry[] {
   const entry = (name: string, sample: string): LegendEntry => ({
     name,
     sample,
@@ -138,7 +147,7 @@ function legendOf({ nodes }: Network, hasMissing: boolean, hasFlagged: boolean):
   return [
     entry('pair; thicker: more takes', line('', 2)),
     ...(hasFlagged ? [entry('with a take that disagrees', line('flagged'))] : []),
-    ...(hasMissing ? [entry('pair not taken', line('missing'))] : []),
+    ...(missingName === undefined ? [] : [entry(missingName, line('missing'))]),
     ...(nodes.some(({ isOpen }) => isOpen)
       ? [entry('open: no level', element('circle', { cx: 14, cy: 7, r: 5.5, class: 'node open' }))]
       : []),

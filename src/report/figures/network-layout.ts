@@ -1,3 +1,4 @@
+import type { TakeSet } from '../../takes/take-set.ts';
 import { placedUnit } from '../response-name.ts';
 import type { Result } from '../result.ts';
 import { flaggedTakes, tieGroups } from '../take-wording.ts';
@@ -41,10 +42,35 @@ const RADIUS = { least: 70, aUnit: 16, most: 280 };
 const MARGIN = 58;
 const WIDEST = 720;
 
+/** What a network is drawn of. */
+export interface NetworkSource {
+  readonly takes: TakeSet['takes'];
+  readonly isDirected: boolean;
+  /** Indices of takes that disagree or are tied. */
+  readonly disagreeing: ReadonlySet<number>;
+  /** Units in their mounts, as they are named to readers, that have no level at some frequency. */
+  readonly open: ReadonlySet<string>;
+  /** Units that no take names. */
+  readonly untaken: readonly string[];
+}
+
+/** The network of a result. */
+export function networkLayout({ set, model, examination }: Result): Network {
+  return networkOf({
+    takes: set.takes,
+    isDirected: model.choice.kind === 'directional',
+    disagreeing: new Set([...flaggedTakes(examination), ...tieGroups(examination).flat()].map(({ take }) => take)),
+    open: new Set(
+      examination.units
+        .filter(({ counts }) => counts.open > 0)
+        .map(({ response }) => placedUnit(model.responses[response]!)),
+    ),
+    untaken: [],
+  });
+}
+
 /** Units on a ring for each connected part, rings side by side; in the order units are first named. */
-export function networkLayout(result: Result): Network {
-  const { set, model, examination } = result;
-  const isDirected = model.choice.kind === 'directional';
+export function networkOf({ takes, isDirected, disagreeing, open, untaken }: NetworkSource): Network {
   const names: string[] = [];
   const indexOf = new Map<string, number>();
   const place = (unit: string, mount: string) => {
@@ -53,9 +79,8 @@ export function networkLayout(result: Result): Network {
     indexOf.set(name, found);
     return found;
   };
-  const disagreeing = new Set([...flaggedTakes(examination), ...tieGroups(examination).flat()].map(({ take }) => take));
   const edges = new Map<string, { from: number; to: number; takes: number; flagged: string[] }>();
-  for (const [t, take] of set.takes.entries()) {
+  for (const [t, take] of takes.entries()) {
     const ends = [place(take.emitter, take.emitterMount), place(take.receiver, take.receiverMount)] as const;
     const [from, to] = isDirected ? ends : ([Math.min(...ends), Math.max(...ends)] as const);
     const edge = edges.get(`${from} ${to}`) ?? { from, to, takes: 0, flagged: [] };
@@ -63,11 +88,7 @@ export function networkLayout(result: Result): Network {
     if (disagreeing.has(t)) edge.flagged.push(take.id);
     edges.set(`${from} ${to}`, edge);
   }
-  const open = new Set(
-    examination.units
-      .filter(({ counts }) => counts.open > 0)
-      .map(({ response }) => placedUnit(model.responses[response]!)),
-  );
+  for (const unit of untaken) place(unit, '');
   const parts = connectedParts(names.length, [...edges.values()]);
   const { places, width, height } = ringPlaces(parts);
   const nodes = names.map((name, n): NetworkNode => ({ name, ...places.get(n)!, isOpen: open.has(name) }));

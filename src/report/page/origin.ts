@@ -15,7 +15,8 @@ export function settingsList({ version, model, settings }: Result): string {
   return `<h3>Settings</h3><dl>${items}</dl><p class="note">The same run again: <code>oddloop solve --settings summary.json --out again</code></p>`;
 }
 
-function settingText(value: unknown): string {
+/** A setting as a reader sees it. */
+export function settingText(value: unknown): string {
   if (value === null || value === undefined) return 'not given';
   if (Array.isArray(value)) {
     return value.length === 0
