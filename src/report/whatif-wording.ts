@@ -135,7 +135,7 @@ const WANTED: Readonly<Record<Criterion, string>> = {
 };
 
 /** How the pairs of a plan without an order are mounted; empty where none is to come. */
-export function freshSentence(seatings: readonly PlannedSeating[]): string {
+function freshSentence(seatings: readonly PlannedSeating[]): string {
   const isToCome = seatings.some(({ kind }) => kind !== 'made');
   return isToCome ? 'Both units of every pair to come are taken as mounted anew for it.' : '';
 }

@@ -13,7 +13,7 @@ import { markShape, valueRows } from './value-rows.ts';
 /** Bars of the takes that are checked least; the table of numbers has all. */
 export const MOST_BARS = 60;
 
-export const USES = ['as seated', 'seated again', 'on another partner'] as const;
+const USES = ['as seated', 'seated again', 'on another partner'] as const;
 
 /** The pairs of a design on a ring of its units, made already or to come. */
 export function plannedNetwork({ bench, bands, worstBand }: Prediction): Figure {
