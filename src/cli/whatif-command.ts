@@ -1,6 +1,5 @@
 import { InputError } from '../quantity/input-fault.ts';
 import { jsonText } from '../report/json-text.ts';
-import { whatifPage } from '../report/page/whatif-page.ts';
 import { whatifRecord } from '../report/whatif-json.ts';
 import type { SuggestedTakes, WhatifResult } from '../report/whatif-result.ts';
 import { sheetFile, sheetPage } from '../report/whatif-sheet.ts';
@@ -52,7 +51,11 @@ export async function whatifCommand(request: WhatifRequest): Promise<number> {
       ];
       await writeNewFiles([sheetFile(sheet), sheetPage(sheet, facts)]);
     }
-    await folder?.write([...whatifFiles(result), whatifPage(result)], (name) => progress.step(`writing ${name}`));
+    if (folder !== undefined) {
+      // Loaded only where a page is wanted: drawing takes packages that planning has no use for.
+      const { whatifPage } = await import('../report/page/whatif-page.ts');
+      await folder.write([...whatifFiles(result), whatifPage(result)], (name) => progress.step(`writing ${name}`));
+    }
     progress.clear();
     await writeResult(answer(result, request));
     return ending(result.predictions);
