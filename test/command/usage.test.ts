@@ -45,7 +45,10 @@ describe('oddloop', () => {
     [['solve', '--out', 'r'], 'FILE: found no input file'],
     [['solve', '', '--out', 'r'], 'FILE: found ""'],
     [['solve', 'a.csv', '--out', ''], '--out: found ""'],
-    [['solve', 'a.csv', '--out', 'r', '--u', '0,3'], '--u: found "0,3"; expected a'],
+    [
+      ['solve', 'a.csv', '--out', 'r', '--u', '0,3'],
+      '--u: found "0,3"; expected a standard uncertainty from 0.000001 to 1000 dB',
+    ],
     [['solve', 'a.csv', '--out', 'r', '--model', 'best'], 'auto, reciprocal or directional'],
     [['inspect'], 'Example: oddloop inspect bench.csv'],
     [['inspect', 'a.csv', '--out', 'r'], '--out'],
